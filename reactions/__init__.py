@@ -1,0 +1,1 @@
+"""Records, conditions, planning and cautions for addition reactions of fullerenes."""

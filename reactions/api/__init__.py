@@ -1,0 +1,1 @@
+"""The records, the search and the calculators over REST."""

@@ -1,0 +1,1 @@
+"""The chemistry: pure functions over plain values; no Django, no database, no network."""

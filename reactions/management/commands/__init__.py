@@ -1,0 +1,1 @@
+"""Commands, each a thin door to a service or a calculator."""

@@ -1,0 +1,1 @@
+"""The pages: views, forms and what they draw."""

@@ -1,0 +1,1 @@
+"""One query language over reactions; two engines for structures."""

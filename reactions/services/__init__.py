@@ -1,0 +1,1 @@
+"""The only writers. Each function is one transaction and writes one revision."""
