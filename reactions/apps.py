@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from django.apps import AppConfig
+from django.db.models.signals import post_migrate
 
 
 class ReactionsConfig(AppConfig):
@@ -11,3 +12,11 @@ class ReactionsConfig(AppConfig):
     name = "reactions"
     verbose_name = "Reactions"
     default_auto_field = "django.db.models.BigAutoField"
+
+    def ready(self) -> None:
+        """Keep the database's own rules standing after every migration."""
+        from reactions.models.guards import install_after_migration
+
+        post_migrate.connect(
+            install_after_migration, sender=self, dispatch_uid="reactions.models.guards"
+        )
