@@ -2,8 +2,11 @@
 
 from __future__ import annotations
 
-from django.urls import URLPattern, URLResolver
+from django.urls import include, path
 
 app_name = "reactions"
 
-urlpatterns: list[URLPattern | URLResolver] = []
+urlpatterns = [
+    path("api/", include("reactions.api.urls")),
+    path("", include("reactions.pages.urls")),
+]

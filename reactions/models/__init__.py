@@ -5,7 +5,7 @@ from reactions.models.campaigns import Campaign, Membership, Role
 from reactions.models.components import Component, ComponentRole
 from reactions.models.history_imports import HistoryImport, ImportState
 from reactions.models.isolation import Fraction, IsolationMethod, IsolationStep
-from reactions.models.lab_families import LabFamily
+from reactions.models.lab_families import LabFamily, known_families, known_family
 from reactions.models.observations import Observation, ObservationKind
 from reactions.models.reactions import AdditionMode, Atmosphere, Light, Reaction, State
 from reactions.models.readings import Reading, ReadingLevel, ReadingMethod
@@ -37,4 +37,6 @@ __all__ = [
     "Section",
     "Signature",
     "State",
+    "known_families",
+    "known_family",
 ]

@@ -1,9 +1,16 @@
-"""Addition families that a lab has added to the built-in table."""
+"""Addition families that a lab has added to the built-in table, and the two read as one."""
 
 from __future__ import annotations
 
 from django.conf import settings
 from django.db import models
+
+from reactions.chemistry.families import (
+    Family,
+    UnknownFamilyError,
+    families,
+    family_from_data,
+)
 
 
 class LabFamily(models.Model):
@@ -21,3 +28,24 @@ class LabFamily(models.Model):
 
     def __str__(self) -> str:
         return self.name
+
+    @property
+    def family(self) -> Family:
+        """Return the family in the form that the chemistry uses."""
+        return family_from_data(self.definition)
+
+
+def known_families() -> dict[str, Family]:
+    """Return every family by key: the built-in ones in the table's order, then the lab's own."""
+    own = {row.key: row.family for row in LabFamily.objects.all()}
+    return {**families(), **own}
+
+
+def known_family(key: str) -> Family:
+    """Return one family; raises ``UnknownFamilyError``."""
+    if key in families():
+        return families()[key]
+    row = LabFamily.objects.filter(key=key).first()
+    if row is None:
+        raise UnknownFamilyError(f"There is no addition family “{key}”.")
+    return row.family

@@ -1,0 +1,7 @@
+"""Addresses of the pages, one line for each area of the site."""
+
+from __future__ import annotations
+
+from django.urls import URLPattern, URLResolver
+
+urlpatterns: list[URLPattern | URLResolver] = []

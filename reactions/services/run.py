@@ -1,0 +1,138 @@
+"""What is written down during and after a run: conditions, time line, readings, isolation."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from typing import Any
+
+from reactions.errors import FieldErrors
+from reactions.models import (
+    Fraction,
+    IsolationStep,
+    Observation,
+    Reading,
+    ReadingLevel,
+    Section,
+)
+from reactions.services.found import composition_of
+from reactions.services.inputs import (
+    ConclusionInput,
+    ConditionsInput,
+    IsolationStepInput,
+    ObservationInput,
+    ReadingInput,
+)
+from reactions.services.revising import ChangeList, Edit, revising
+
+
+def _plain(value: Any) -> Any:
+    """Return ``value`` as JSON can hold it."""
+    if value is None or isinstance(value, (bool, int, float)):
+        return value
+    return str(value)
+
+
+def _set_fields(target: Any, values: dict[str, Any], changes: ChangeList) -> None:
+    for name, value in values.items():
+        changes.note(name, _plain(getattr(target, name)), _plain(value))
+        setattr(target, name, value)
+
+
+def amend_conditions(edit: Edit, conditions: ConditionsInput) -> None:
+    """Put the conditions in place of those stored."""
+    with revising(edit, Section.CONDITIONS, "conditions amended") as (reaction, changes):
+        _set_fields(reaction, dict(conditions), changes)
+
+
+def amend_conclusion(edit: Edit, conclusion: ConclusionInput) -> None:
+    """Put conclusion, recovered cage and title in place of those stored."""
+    with revising(edit, Section.CONCLUSION, "conclusion amended") as (reaction, changes):
+        values = {name: value for name, value in dict(conclusion).items() if name != "title"}
+        if conclusion.title is not None:
+            values["title"] = conclusion.title
+        _set_fields(reaction, values, changes)
+
+
+def add_observation(edit: Edit, observation: ObservationInput) -> Observation:
+    """Add a line to the time line."""
+    with revising(edit, Section.TIME_LINE, "observation added") as (reaction, changes):
+        row = Observation.objects.create(
+            reaction=reaction, recorded_by=edit.user, **dict(observation)
+        )
+        changes.note("time line", None, f"{row.at_min:g} min, {row.kind}: {row.text}")
+    return row
+
+
+def remove_observation(edit: Edit, observation_id: int) -> None:
+    """Take a line out of the time line; the revision keeps what it said."""
+    with revising(edit, Section.TIME_LINE, "observation removed") as (reaction, changes):
+        row = Observation.objects.filter(reaction=reaction, pk=observation_id).first()
+        if row is None:
+            raise FieldErrors.at("observation", "This observation is already gone.")
+        changes.note("time line", f"{row.at_min:g} min, {row.kind}: {row.text}", None)
+        row.delete()
+
+
+def _described(reading: Reading) -> str:
+    shares = ", ".join(
+        f"x{level} {100 * share:.1f} %" for level, share in enumerate(composition_of(reading))
+    )
+    when = "" if reading.sampled_at_min is None else f" at {reading.sampled_at_min:g} min"
+    return f"{reading.get_method_display()}{when}: {shares}"
+
+
+def add_reading(edit: Edit, reading: ReadingInput) -> Reading:
+    """Add a composition to the readings."""
+    with revising(edit, Section.READINGS, "reading added") as (reaction, changes):
+        row = Reading.objects.create(
+            reaction=reaction,
+            recorded_by=edit.user,
+            method=reading.method,
+            sampled_at_min=reading.sampled_at_min,
+            is_higher_lumped=reading.is_higher_lumped,
+            note=reading.note,
+        )
+        for level, share in sorted(reading.mole_fraction_by_level.items()):
+            ReadingLevel.objects.create(reading=row, level=level, mole_fraction=share)
+        changes.note("reading", None, _described(row))
+    return row
+
+
+def remove_reading(edit: Edit, reading_id: int) -> None:
+    """Take a reading out; the revision keeps what it said."""
+    with revising(edit, Section.READINGS, "reading removed") as (reaction, changes):
+        row = Reading.objects.filter(reaction=reaction, pk=reading_id).first()
+        if row is None:
+            raise FieldErrors.at("reading", "This reading is already gone.")
+        changes.note("reading", _described(row), None)
+        row.delete()
+
+
+def _isolation_as_text(reaction: Any) -> list[str]:
+    steps = IsolationStep.objects.filter(reaction=reaction).prefetch_related("fractions")
+    return [
+        f"{step}: {step.medium}, {step.solvent}, {step.loading_mg} mg, {step.volume_ml} mL; "
+        + "; ".join(
+            f"{row} level {row.level} purity {row.purity:g}"
+            + (" carried on" if row.is_carried_on else "")
+            for row in step.fractions.all()
+        )
+        + (f" ({step.note})" if step.note else "")
+        for step in steps
+    ]
+
+
+def amend_isolation(edit: Edit, steps: Sequence[IsolationStepInput]) -> None:
+    """Put these steps and their fractions in place of those stored."""
+    with revising(edit, Section.ISOLATION, "isolation amended") as (reaction, changes):
+        before = _isolation_as_text(reaction)
+        reaction.isolation_steps.all().delete()
+        for position, step in enumerate(steps, 1):
+            values = dict(step)
+            fractions = values.pop("fractions")
+            row = IsolationStep.objects.create(reaction=reaction, position=position, **values)
+            Fraction.objects.bulk_create(
+                Fraction(step=row, position=order, **dict(fraction))
+                for order, fraction in enumerate(fractions, 1)
+            )
+        changes.note("isolation", before, _isolation_as_text(reaction))
