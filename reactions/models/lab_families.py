@@ -7,8 +7,8 @@ from django.db import models
 
 from reactions.chemistry.families import (
     Family,
-    UnknownFamilyError,
     families,
+    family,
     family_from_data,
 )
 
@@ -43,9 +43,7 @@ def known_families() -> dict[str, Family]:
 
 def known_family(key: str) -> Family:
     """Return one family; raises ``UnknownFamilyError``."""
-    if key in families():
-        return families()[key]
-    row = LabFamily.objects.filter(key=key).first()
+    row = None if key in families() else LabFamily.objects.filter(key=key).first()
     if row is None:
-        raise UnknownFamilyError(f"There is no addition family “{key}”.")
+        return family(key)
     return row.family

@@ -25,7 +25,7 @@ def define_family(user: AbstractBaseUser, definition: Mapping[str, Any]) -> LabF
     try:
         family = family_from_data(definition)
     except FamilyError as error:
-        raise FieldErrors({field: [text] for field, text in error.messages.items()}) from error
+        raise FieldErrors({field: [text] for field, text in error.errors.items()}) from error
     if family.key in families() or LabFamily.objects.filter(key=family.key).exists():
         raise FieldErrors.at("key", f"There is a family “{family.key}” already; choose another key.")
     return LabFamily.objects.create(
