@@ -1,0 +1,63 @@
+# Sourced by deploy/serve and deploy/check: bring in what is missing, leave alone what is there.
+# shellcheck shell=sh
+# Expects $root, the folder of the clone.
+
+say() { echo "$*" >&2; }
+
+as_root() {
+    if [ "$(id -u)" -eq 0 ]; then
+        "$@"
+    elif command -v sudo >/dev/null; then
+        sudo "$@"
+    else
+        say "These need root or sudo: $*"
+        exit 1
+    fi
+}
+
+# Install those of the named Debian packages that are missing.
+debian_packages() {
+    command -v dpkg-query >/dev/null || { say "This is no Debian: install $* yourself."; return 0; }
+    missing=
+    for package in "$@"; do
+        state=$(dpkg-query --show --showformat='${db:Status-Status}' "$package" 2>/dev/null || true)
+        [ "$state" = installed ] || missing="$missing $package"
+    done
+    [ -z "$missing" ] && return 0
+    say "Installing Debian packages:$missing"
+    as_root env DEBIAN_FRONTEND=noninteractive sh -c "
+        { apt-get -q update && apt-get -q -y install --no-install-recommends $missing; } >&2 </dev/null"
+}
+
+# Tell whether the file $2 holds the word $1.
+holds() { [ -r "$2" ] && [ "$(cat "$2")" = "$1" ]; }
+
+hash_of() { cat "$@" | sha256sum | cut -d ' ' -f 1; }
+
+# Make the virtual environment $1 hold exactly what the lock $2 names, unless it does already.
+environment() {
+    lock=$(hash_of "$2")
+    holds "$lock" "$1/.lock" && return 0
+    say "Filling $1 from $2"
+    [ -x "$1/bin/pip" ] || python3 -m venv --clear "$1"
+    rm -f "$1/.lock"
+    "$1/bin/pip" install --quiet --disable-pip-version-check --no-input --no-deps --no-compile \
+        --require-hashes --only-binary :all: --requirement "$2"
+    echo "$lock" >"$1/.lock"
+}
+
+# Lay the front-end parts, unless they are there already; $1 is the virtual environment that takes
+# npm when the machine has none, $2 is --tests or nothing.
+front_end_parts() {
+    lock=$(hash_of "$root/reactions/parts/package-lock.json" "$root/deploy/parts")
+    stamp="$root/reactions/parts/node_modules/.lock${2:-}"
+    if holds "$lock" "$stamp" && [ -d "$root/reactions/static/reactions/parts" ]; then return 0; fi
+    say "Fetching the front-end parts"
+    if ! command -v npm >/dev/null && ! [ -x "$1/bin/npm" ]; then
+        "$1/bin/pip" install --quiet --disable-pip-version-check --no-input --no-deps --no-compile \
+            --require-hashes --only-binary :all: --requirement "$root/deploy/npm.lock"
+    fi
+    VIRTUAL_ENV="$1" "$root/deploy/parts" "${2:-}"
+    echo "$lock" >"$root/reactions/parts/node_modules/.lock"
+    echo "$lock" >"$stamp"
+}
