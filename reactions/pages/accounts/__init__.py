@@ -1,0 +1,1 @@
+"""Logging in and out."""

@@ -1,0 +1,1 @@
+"""What the pages draw on the server, as SVG."""
