@@ -10,8 +10,8 @@ from __future__ import annotations
 
 from rdkit import Chem
 
-# Groups 3 to 12 with lanthanoids and actinoids.
-_METALS = frozenset([*range(21, 31), *range(39, 49), *range(57, 81), *range(89, 113)])
+# Groups 3 to 12, with lanthanoids and actinoids.
+METALS = frozenset([*range(21, 31), *range(39, 49), *range(57, 81), *range(89, 113)])
 _DONORS = frozenset([7, 15, 33])  # N, P, As: three bonds and one pair
 _BONDS_OF_A_DONOR = 3
 
@@ -37,7 +37,7 @@ def _bond_to_metal(atom: Chem.Atom) -> Chem.Bond | None:
         bond
         for bond in atom.GetBonds()
         if bond.GetBondType() == Chem.BondType.SINGLE
-        and bond.GetOtherAtom(atom).GetAtomicNum() in _METALS
+        and bond.GetOtherAtom(atom).GetAtomicNum() in METALS
     ]
     return bonds[0] if len(bonds) == 1 else None
 

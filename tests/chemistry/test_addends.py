@@ -203,7 +203,7 @@ def test_wedges_of_a_molfile_are_read():
     [
         ("", "No structure is given"),
         ("CC(=O)OCC", r"mark where it is attached with \*"),
-        ("[R1]CC", r"with \* instead of R"),
+        ("[R1]CC", r"mark where it is attached with \*"),
         ("*C(*)(*)C", "3 places are marked"),
         ("*=O", "exactly one single bond"),
         ("C*C", "exactly one single bond"),
