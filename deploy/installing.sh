@@ -2,6 +2,9 @@
 # shellcheck shell=sh
 # Expects $root, the folder of the clone.
 
+# What Python's wheels expect of a bare Debian: RDKit draws with the two X libraries.
+site_packages="ca-certificates python3 python3-venv libexpat1 libxext6 libxrender1"
+
 say() { echo "$*" >&2; }
 
 as_root() {
@@ -26,7 +29,7 @@ debian_packages() {
     [ -z "$missing" ] && return 0
     say "Installing Debian packages:$missing"
     as_root env DEBIAN_FRONTEND=noninteractive sh -c "
-        { apt-get -q update && apt-get -q -y install --no-install-recommends $missing; } >&2 </dev/null"
+        { apt-get -qq update && apt-get -qq -y install --no-install-recommends $missing; } >&2 </dev/null"
 }
 
 # Tell whether the file $2 holds the word $1.

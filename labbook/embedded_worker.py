@@ -57,6 +57,12 @@ class EmbeddedWorker:
         return stopped
 
     def _work(self) -> None:
+        try:
+            self._take_tasks()
+        except Exception:
+            _log.critical("The task worker could not start: no task runs.", exc_info=True)
+
+    def _take_tasks(self) -> None:
         # The server has just come up on these settings; checking them again costs a second.
         os.environ.setdefault("CELERY_SKIP_CHECKS", "1")
         worker = self._application.WorkController(

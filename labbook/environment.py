@@ -32,7 +32,7 @@ def list_from(name: str, *, default: str) -> list[str]:
 
 
 def secret_key_in(folder: Path) -> str:
-    """Return the secret key kept in ``folder``, made on first use and readable by its owner only."""
+    """Return the secret key kept in ``folder``, made on first use for its owner only."""
     path = folder / "secret-key"
     if path.exists():
         return path.read_text(encoding="ascii").strip()

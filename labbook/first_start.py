@@ -6,7 +6,7 @@ from dataclasses import dataclass, field
 
 from django.conf import settings
 from django.core.management import call_command
-from django.db import connection
+from django.db import connection, transaction
 from django.db.migrations.executor import MigrationExecutor
 
 from labbook.accounts.asking import make_first_account
@@ -31,13 +31,15 @@ def bring_database_up_to_date() -> None:
 
 def prepare_book(*, is_empty: bool, account: str | None) -> Start:
     """Give a book without accounts its first content: the invented demo or one account."""
+    settings.STATIC_ROOT.mkdir(exist_ok=True)
     bring_database_up_to_date()
     if has_accounts():
         return Start()
     if is_empty:
         made = make_first_account(settings.DATA_DIR, account)
         return Start(True, {made.name: made.generated} if made.generated else {})
-    call_command("load_demo", verbosity=0)
-    passwords = give_demo_passwords()
+    with transaction.atomic():
+        call_command("load_demo", verbosity=0)
+        passwords = give_demo_passwords()
     keep_log_ins(settings.DATA_DIR, passwords)
     return Start(True, passwords)

@@ -115,6 +115,8 @@ def main(words: list[str] | None = None) -> None:
     """Prepare the book and serve it until SIGTERM or Ctrl+C."""
     arguments = _arguments(words)
     _set_environment(arguments)
+    # The database, too, is for its owner's eyes only.
+    os.umask(0o077)
     signal.signal(signal.SIGTERM, _stop_on_signal)
     listener = _listen(arguments.host, arguments.port)
 

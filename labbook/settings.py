@@ -145,9 +145,14 @@ SPECTACULAR_SETTINGS = {
 }
 
 CELERY_BROKER_URL = os.environ.get("LABBOOK_BROKER_URL", "memory://")
+# Sites that share one Redis each need a queue of their own.
+CELERY_TASK_DEFAULT_QUEUE = os.environ.get("LABBOOK_TASK_QUEUE", "labbook")
 CELERY_TASK_IGNORE_RESULT = True
 CELERY_TASK_ACKS_LATE = True
 CELERY_BROKER_CONNECTION_RETRY_ON_STARTUP = True
+if CELERY_BROKER_URL.startswith("memory:"):
+    # The queue is looked at this often, in seconds; the default of one second is felt.
+    CELERY_BROKER_TRANSPORT_OPTIONS = {"polling_interval": 0.1}
 
 if HTTPS and DEBUG:
     raise ImproperlyConfigured("LABBOOK_DEBUG and LABBOOK_HTTPS exclude each other.")

@@ -1,9 +1,26 @@
-"""The people and the campaign that most tests need."""
+"""The people and the campaign that most tests need, and the database and folders all run in."""
 
 import pytest
 from django.contrib.auth import get_user_model
 
+from labbook.celery import application as celery_application
+from labbook.embedded_worker import EmbeddedWorker
 from reactions.models import Campaign, Membership, Role
+
+pytest_plugins = ["tests.running_server"]
+
+
+def pytest_addoption(parser):
+    parser.addoption("--slow", action="store_true", help="also run the long versions")
+
+
+def pytest_collection_modifyitems(config, items):
+    """Leave the long versions of properties to ``--slow``."""
+    if config.getoption("--slow"):
+        return
+    slow = [item for item in items if item.get_closest_marker("slow")]
+    config.hook.pytest_deselected(items=slow)
+    items[:] = [item for item in items if item not in slow]
 
 
 def pytest_configure():
@@ -11,6 +28,33 @@ def pytest_configure():
     from django.conf import settings
 
     settings.PASSWORD_HASHERS = ["django.contrib.auth.hashers.MD5PasswordHasher"]
+
+
+@pytest.fixture(scope="session")
+def django_db_modify_db_settings(django_db_modify_db_settings_parallel_suffix, tmp_path_factory):
+    """Put an SQLite test database in a file, as the site has it, so that threads can share it."""
+    from django.conf import settings
+
+    database = settings.DATABASES["default"]
+    if database["ENGINE"].endswith("sqlite3"):
+        database["TEST"]["NAME"] = tmp_path_factory.mktemp("database") / "test.sqlite3"
+
+
+@pytest.fixture(scope="session", autouse=True)
+def _files_in_a_temporary_folder(tmp_path_factory):
+    from django.conf import settings
+
+    settings.MEDIA_ROOT = tmp_path_factory.mktemp("files")
+
+
+@pytest.fixture
+def task_worker(transactional_db):
+    """A real worker on threads of this process, taking tasks from the real broker."""
+    worker = EmbeddedWorker(celery_application)
+    worker.start()
+    assert worker.wait_until_ready(20)
+    yield worker
+    assert worker.stop()
 
 
 @pytest.fixture(autouse=True)
