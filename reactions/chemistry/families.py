@@ -90,12 +90,19 @@ def question_level(family: Family, cage: str, level: int) -> LevelQuestion | Non
     """Question an addition level wanted on a cage (a name such as C60), or return None.
 
     A level below 1 or above the family's sites is an error. One above the highest level known is a
-    warning, and so is one above 1 on a cage for which no level is on record.
+    warning; so is any level on a cage that the family doesn't name, and one above 1 where no
+    highest level is on record.
     """
     if level < 1:
         return LevelQuestion("error", f"A level of {level} adds nothing: choose 1 or more.")
     sites = family.sites.get(cage)
-    if sites is not None and level > sites:
+    if sites is None:
+        return LevelQuestion(
+            "warning",
+            f"{family.name} is on record for {' and '.join(family.sites)}, not for {cage}: neither "
+            f"its sites nor its highest level are known. Confirm that level {level} is meant.",
+        )
+    if level > sites:
         return LevelQuestion(
             "error",
             f"Level {level} is impossible: {cage} can carry at most {sites} in {family.name} "
@@ -111,7 +118,8 @@ def question_level(family: Family, cage: str, level: int) -> LevelQuestion | Non
     if highest is None and level > 1:
         return LevelQuestion(
             "warning",
-            f"No level is on record for {family.name} on {cage}. Confirm that {level} is meant.",
+            f"No highest level is on record for {family.name} on {cage}. "
+            f"Confirm that level {level} is meant.",
         )
     return None
 

@@ -13,6 +13,9 @@ from dataclasses import dataclass
 from types import MappingProxyType
 from typing import Any, TypeVar
 
+from reactions.chemistry.drawings import sanitised, unsanitised
+from reactions.chemistry.structures import StructureError
+
 MODELS = ("independent_sites", "sequential", "poisson")
 _KEY = re.compile(r"[a-z0-9]+(_[a-z0-9]+)*")
 _ABSOLUTE_ZERO_C = -273.15
@@ -197,7 +200,7 @@ def _role(fields: _Fields) -> FamilyRole:
 def _by_product(fields: _Fields) -> ByProduct:
     values: dict[str, Any] = {
         "name": fields.take("name", _text),
-        "smiles": fields.take("smiles", _text, None),
+        "smiles": fields.take("smiles", _smiles, None),
         "per_addition": fields.take("per_addition", _positive, 1.0),
         "is_gas": fields.take("is_gas", _truth, False),
     }
@@ -273,3 +276,12 @@ def _model(value: Any) -> str:
     if value not in MODELS:
         raise ValueError(f"{value!r} is no composition model: choose {', '.join(MODELS)}")
     return str(value)
+
+
+def _smiles(value: Any) -> str:
+    text = _text(value)
+    try:
+        sanitised(unsanitised(text))
+    except StructureError as error:
+        raise ValueError(str(error)) from error
+    return text
