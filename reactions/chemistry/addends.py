@@ -40,7 +40,8 @@ class AddendStructure:
     that attaches R and H adds two addends.
     ``monoisotopic_mass``: the same with the principal isotope of each element, in Da; electron
     masses of ions are not counted.
-    ``search_smiles``: the addend with its attached cage carbons.
+    ``search_smiles``: the addend with its attached cage carbons, double bonds written out (some
+    aromatic forms of adducts don't parse in every version of a toolkit).
     """
 
     smiles: str
@@ -80,7 +81,7 @@ def read_addend(structure: str) -> AddendStructure:
             formula=_formula(molecule),
             mass_g_per_mol=Descriptors.MolWt(molecule),  # type: ignore[attr-defined]
             monoisotopic_mass=rdMolDescriptors.CalcExactMolWt(molecule),
-            search_smiles=_settled(_on_cage_atoms(molecule))[0],
+            search_smiles=_kekule_smiles(_on_cage_atoms(molecule)),
         )
 
 
@@ -123,6 +124,12 @@ def _settled(molecule: Chem.Mol) -> tuple[str, Chem.Mol]:
         form = Chem.MolToSmiles(again)
     circle = list(forms)[list(forms).index(form) :]
     return min(circle), forms[min(circle)]
+
+
+def _kekule_smiles(molecule: Chem.Mol) -> str:
+    kekule = Chem.RWMol(molecule)
+    Chem.Kekulize(kekule, clearAromaticFlags=True)
+    return Chem.MolToSmiles(kekule)
 
 
 def _forget_geometry_fixed_by_cage(addend: Chem.Mol) -> None:

@@ -24,7 +24,6 @@ import numpy as np
 from numpy.typing import NDArray
 from rdkit import Chem, DataStructs, rdBase
 
-from reactions.chemistry.addends import AddendStructure, read_addend
 from reactions.chemistry.attachment import plain_molecule
 from reactions.chemistry.drawings import LONGEST_TEXT, is_molfile, sanitised, short, unsanitised
 from reactions.chemistry.ligands import METALS
@@ -39,21 +38,28 @@ _MOST_ATTACHED_CARBONS = 2
 
 
 @dataclass(frozen=True)
-class Query:
-    """A substructure to look for.
+class QueryOutline:
+    """What a search has to know of a query before it matches anything.
 
-    ``smarts`` says the same in SMARTS, for a database, and ``fingerprint`` holds the bits that
+    ``smarts`` says the query in SMARTS, for a database, and ``fingerprint`` holds the bits that
     every structure containing it sets. A database doesn't know the rules about the cage:
     ``may_match_cage`` says that it could find more than is right, ``is_for_database`` that it
     can't find less (a query of one or two atoms screens nothing, and databases drop the hydrogen
     of ``*[H]``).
     """
 
-    molecule: Chem.Mol
     smarts: str
     fingerprint: bytes
     may_match_cage: bool
     is_for_database: bool
+
+
+@dataclass(frozen=True)
+class Query:
+    """A substructure to look for."""
+
+    molecule: Chem.Mol
+    outline: QueryOutline
 
 
 def compile_query(text: str, kind: QueryKind = "auto") -> Query:
@@ -78,13 +84,13 @@ def compile_query(text: str, kind: QueryKind = "auto") -> Query:
                 f"The query has {molecule.GetNumAtoms()} atoms, more than {MOST_QUERY_ATOMS}; "
                 "look for a smaller part."
             )
-        return Query(
-            molecule=molecule,
+        outline = QueryOutline(
             smarts=Chem.MolToSmarts(molecule),
             fingerprint=_bits(molecule),
             may_match_cage=_may_match_cage(molecule),
             is_for_database=_is_for_database(molecule),
         )
+    return Query(molecule, outline)
 
 
 def fingerprint(search_smiles: str) -> bytes:
@@ -92,10 +98,9 @@ def fingerprint(search_smiles: str) -> bytes:
     return _bits(_search_form(search_smiles).molecule)
 
 
-def read_searchable(structure: str) -> tuple[AddendStructure, bytes]:
-    """Read an addend (see ``read_addend``) and return it with its fingerprint."""
-    addend = read_addend(structure)
-    return addend, fingerprint(addend.search_smiles)
+def outline_query(text: str, kind: QueryKind = "auto") -> QueryOutline:
+    """Read a query as ``compile_query`` does, and return its outline."""
+    return compile_query(text, kind).outline
 
 
 def match(query: Query, search_smiles: Iterable[str]) -> list[int]:
