@@ -17,6 +17,7 @@ from types import MappingProxyType
 from rdkit import Chem
 
 from reactions.chemistry.drawings import sanitised, unsanitised
+from reactions.chemistry.ionic_form import ionic_form
 from reactions.chemistry.structures import StructureError
 from reactions.chemistry.tables import read_csv_table
 
@@ -36,7 +37,7 @@ class Substance:
     """A row of the substance table.
 
     ``smiles`` is None where the row is a mixture of isomers or a cage; a polymer has its repeat
-    unit. ``density_g_per_ml`` is that of the neat liquid near 20 °C. Hazard and precautionary
+    unit. ``density_g_per_ml`` is that of the neat liquid at 20 to 25 °C. Hazard and precautionary
     statements, signal word and pictograms (GHS01 to GHS09) are codes of the Globally Harmonized
     System; the precautionary ones are a selection.
     """
@@ -75,9 +76,9 @@ def find_substance(name: str | None = None, smiles: str | None = None) -> Substa
     """Return the substance with this name or synonym, else with this structure, else None.
 
     Names are compared without regard to case, spacing and kind of hyphen. Structures are compared
-    as drawn, salts and hydrates with all their parts. Where several rows share a structure, the
-    one first in the table, the more strictly classed, answers. A structure that can't be read
-    finds nothing.
+    with all parts of a salt or hydrate, metals drawn with lines or as ions. Where several rows
+    share a structure, the one first in the table, the more strictly classed, answers. A structure
+    that can't be read finds nothing.
     """
     if name:
         found = _by_name().get(_folded(name))
@@ -145,7 +146,7 @@ def _identities(smiles: str) -> Iterator[str]:
 
     The InChIKey also knows a structure drawn as another tautomer; a few metal complexes have none.
     """
-    molecule = sanitised(unsanitised(smiles))
+    molecule = ionic_form(sanitised(unsanitised(smiles)))
     yield str(Chem.MolToSmiles(molecule))
     inchi_key = str(Chem.MolToInchiKey(molecule))  # type: ignore[no-untyped-call]
     if inchi_key:

@@ -11,13 +11,14 @@ from reactions.chemistry.cautions.kinds import kinds_of
 from reactions.chemistry.cautions.sheet import PlannedConditions, PlannedSubstance
 from reactions.chemistry.drawings import sanitised, unsanitised
 from reactions.chemistry.families import Family, UnknownFamilyError, family
+from reactions.chemistry.ionic_form import ionic_form
 from reactions.chemistry.structures import StructureError
 from reactions.chemistry.substances import Substance, find_substance
 
 
 @dataclass(frozen=True)
 class Member:
-    """One substance of a plan; ``molecule`` is None where no structure is known."""
+    """One substance of a plan; ``molecule``, in ionic form, is None without a structure."""
 
     name: str
     role: str
@@ -77,7 +78,7 @@ def _molecule(smiles: str | None) -> Chem.Mol | None:
     if not smiles:
         return None
     try:
-        return sanitised(unsanitised(smiles))
+        return ionic_form(sanitised(unsanitised(smiles)))
     except StructureError:
         return None
 
