@@ -14,9 +14,11 @@ class ReactionsConfig(AppConfig):
     default_auto_field = "django.db.models.BigAutoField"
 
     def ready(self) -> None:
-        """Keep the database's own rules standing after every migration."""
-        from reactions.models.guards import install_after_migration
+        """Keep the database's own rules and structure search standing after every migration."""
+        from reactions.models import guards
+        from reactions.search import cartridge
 
-        post_migrate.connect(
-            install_after_migration, sender=self, dispatch_uid="reactions.models.guards"
-        )
+        for part in (guards, cartridge):
+            post_migrate.connect(
+                part.install_after_migration, sender=self, dispatch_uid=part.__name__
+            )

@@ -43,9 +43,10 @@ class QueryOutline:
 
     ``smarts`` says the query in SMARTS, for a database, and ``fingerprint`` holds the bits that
     every structure containing it sets. A database doesn't know the rules about the cage:
-    ``may_match_cage`` says that it could find more than is right, ``is_for_database`` that it
-    can't find less (a query of one or two atoms screens nothing, and databases drop the hydrogen
-    of ``*[H]``).
+    ``may_match_cage`` says that it could find more than is right. ``is_for_database`` says that it
+    neither finds less nor runs away: databases drop the hydrogen of ``*[H]``, a query of one or two
+    atoms screens nothing, and one in several parts can take minutes that no time limit of a
+    database cuts short.
     """
 
     smarts: str
@@ -213,8 +214,7 @@ def _from_smarts(text: str) -> Chem.Mol:
 def _from_any(text: str) -> Chem.Mol:
     if is_molfile(text):
         return _from_drawing(text)
-    has_query_bonds = re.search(r"[~:@!]", re.sub(r"\[[^\]]*\]", "", text)) is not None
-    if not has_query_bonds and Chem.MolFromSmiles(text.strip(), sanitize=False) is not None:
+    if _looks_like_smiles(text.strip()):
         return _from_drawing(text)
     try:
         return _from_smarts(text)
@@ -223,6 +223,15 @@ def _from_any(text: str) -> Chem.Mol:
             f"“{short(text.strip())}” can't be read, neither as SMILES nor as SMARTS; "
             "check its brackets and ring numbers."
         ) from None
+
+
+def _looks_like_smiles(text: str) -> bool:
+    has_query_bonds = re.search(r"[~:@!]", re.sub(r"\[[^\]]*\]", "", text)) is not None
+    molecule = None if has_query_bonds else Chem.MolFromSmiles(text, sanitize=False)
+    if molecule is None:
+        return False
+    problems = [problem.GetType() for problem in Chem.DetectChemistryProblems(molecule)]
+    return "AtomKekulizeException" not in problems  # an aromatic atom in no ring: cc, c(c)n
 
 
 _READERS: dict[QueryKind, Callable[[str], Chem.Mol]] = {
@@ -242,7 +251,7 @@ def _may_match_cage(query: Chem.Mol) -> bool:
 
 
 def _is_for_database(query: Chem.Mol) -> bool:
-    if query.GetNumAtoms() <= _MOST_ATTACHED_CARBONS:
+    if query.GetNumAtoms() <= _MOST_ATTACHED_CARBONS or len(Chem.GetMolFrags(query)) > 1:
         return False
     methane = Chem.AddHs(Chem.MolFromSmiles("C"))
     carbon, hydrogen = methane.GetAtomWithIdx(0), methane.GetAtomWithIdx(1)

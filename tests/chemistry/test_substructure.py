@@ -152,6 +152,7 @@ def test_a_molfile_query_finds_what_its_smiles_finds():
 
 def test_auto_tells_smiles_from_smarts():
     assert found("[CX4]") == found("[CX4]", "smarts")
+    assert found("ccc") == found("ccc", "smarts") != set()
     assert found("C~N") == found("C~N", "smarts")
     assert found("[CH3]OC=O") == found("[CH3]OC=O", "smiles")
 
@@ -223,6 +224,7 @@ def test_hydrogen_named_in_smarts_is_not_for_a_database():
         ("*CC", True, True),
         ("[!#6]CC", True, False),
         ("[$(C=O)]OC", True, True),
+        ("CCO.CCN", False, False),
         ("[#1]OC", True, False),
         ("[#1]OCC", False, True),
     ],
