@@ -37,15 +37,33 @@ holds() { [ -r "$2" ] && [ "$(cat "$2")" = "$1" ]; }
 
 hash_of() { cat "$@" | sha256sum | cut -d ' ' -f 1; }
 
+# Run pip in the virtual environment $1. Making one without pip saves five seconds: Debian's own
+# wheel of pip serves, or else Python's.
+pip_in() {
+    python="$1/bin/python"
+    shift
+    wheel=$(find /usr/share/python-wheels -name 'pip-*.whl' 2>/dev/null | head -n 1)
+    if [ -z "$wheel" ]; then "$python" -m ensurepip >/dev/null; fi
+    PYTHONPATH="$wheel" "$python" -m pip --quiet --disable-pip-version-check --no-input "$@"
+}
+
+# Install what the lock $2 names into the virtual environment $1. uv takes half of pip's time but
+# doesn't read pip's configuration: where it can't reach the registry, pip does it.
+install_locked() {
+    hashed="--no-deps --require-hashes --only-binary :all:"
+    # shellcheck disable=SC2086 # a list of options
+    "$1/bin/uv" pip install --quiet $hashed --python "$1/bin/python" --requirement "$2" ||
+        pip_in "$1" install $hashed --no-compile --requirement "$2"
+}
+
 # Make the virtual environment $1 hold exactly what the lock $2 names, unless it does already.
 environment() {
     lock=$(hash_of "$2")
     holds "$lock" "$1/.lock" && return 0
     say "Filling $1 from $2"
-    [ -x "$1/bin/pip" ] || python3 -m venv --clear "$1"
-    rm -f "$1/.lock"
-    "$1/bin/pip" install --quiet --disable-pip-version-check --no-input --no-deps --no-compile \
-        --require-hashes --only-binary :all: --requirement "$2"
+    python3 -m venv --clear --without-pip "$1"
+    pip_in "$1" install --no-deps --require-hashes --requirement "$root/deploy/uv.lock"
+    install_locked "$1" "$2"
     echo "$lock" >"$1/.lock"
 }
 
@@ -57,8 +75,7 @@ front_end_parts() {
     if holds "$lock" "$stamp" && [ -d "$root/reactions/static/reactions/parts" ]; then return 0; fi
     say "Fetching the front-end parts"
     if ! command -v npm >/dev/null && ! [ -x "$1/bin/npm" ]; then
-        "$1/bin/pip" install --quiet --disable-pip-version-check --no-input --no-deps --no-compile \
-            --require-hashes --only-binary :all: --requirement "$root/deploy/npm.lock"
+        install_locked "$1" "$root/deploy/npm.lock"
     fi
     VIRTUAL_ENV="$1" "$root/deploy/parts" "${2:-}"
     echo "$lock" >"$root/reactions/parts/node_modules/.lock"
