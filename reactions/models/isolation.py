@@ -19,6 +19,7 @@ class IsolationMethod(models.TextChoices):
     COMPLEXATION = "complexation", "selective complexation"
     CRYSTALLISATION = "crystallisation", "crystallisation"
     SUBLIMATION = "sublimation", "sublimation"
+    UNSTATED = "unstated", "not stated"
 
 
 class IsolationStep(models.Model):

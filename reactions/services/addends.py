@@ -2,30 +2,18 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-
 import rdkit
 
 from reactions.bounded import run_bounded
-from reactions.chemistry.addends import AddendStructure, read_addend
+from reactions.chemistry.searchable_addends import SearchableAddend, read_searchable_addend
 from reactions.chemistry.structures import StructureError
-from reactions.chemistry.substructure import fingerprint
 from reactions.errors import FieldErrors
 from reactions.models import Addend
 
 
-@dataclass(frozen=True)
-class ReadAddend:
-    """An addend's structure with the fingerprint that screens it."""
-
-    structure: AddendStructure
-    fingerprint: bytes
-
-
-def read_with_fingerprint(text: str) -> ReadAddend:
-    """Return the addend drawn in ``text`` and its fingerprint; runs in a bounded process."""
-    structure = read_addend(text)
-    return ReadAddend(structure, fingerprint(structure.search_smiles))
+def read_bounded(text: str) -> SearchableAddend:
+    """Return an addend with its fingerprint, read in a bounded process; raises ``StructureError``."""
+    return run_bounded(read_searchable_addend, text)
 
 
 def store_addend(text: str, name: str = "") -> Addend:
@@ -34,19 +22,16 @@ def store_addend(text: str, name: str = "") -> Addend:
     A name is taken when the addend has none yet. Raises ``FieldErrors`` at ``addend``.
     """
     known = Addend.objects.filter(smiles=text).first()
-    if known is None:
-        try:
-            read = run_bounded(read_with_fingerprint, text)
-        except StructureError as error:
-            raise FieldErrors.at("addend", str(error)) from error
-        known = _store(read, name)
-    if name and not known.name:
-        known.name = name
-        known.save(update_fields=["name"])
-    return known
+    if known is not None:
+        return _named(known, name)
+    try:
+        return store_read_addend(read_bounded(text), name)
+    except StructureError as error:
+        raise FieldErrors.at("addend", str(error)) from error
 
 
-def _store(read: ReadAddend, name: str) -> Addend:
+def store_read_addend(read: SearchableAddend, name: str) -> Addend:
+    """Return the stored addend of a structure already read, stored now if it is new."""
     structure = read.structure
     addend, _ = Addend.objects.get_or_create(
         smiles=structure.smiles,
@@ -60,4 +45,11 @@ def _store(read: ReadAddend, name: str) -> Addend:
             "rdkit_version": rdkit.__version__,
         },
     )
+    return _named(addend, name)
+
+
+def _named(addend: Addend, name: str) -> Addend:
+    if name and not addend.name:
+        addend.name = name
+        addend.save(update_fields=["name"])
     return addend

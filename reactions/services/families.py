@@ -27,7 +27,9 @@ def define_family(user: AbstractBaseUser, definition: Mapping[str, Any]) -> LabF
     except FamilyError as error:
         raise FieldErrors({field: [text] for field, text in error.errors.items()}) from error
     if family.key in families() or LabFamily.objects.filter(key=family.key).exists():
-        raise FieldErrors.at("key", f"There is a family “{family.key}” already; choose another key.")
+        raise FieldErrors.at(
+            "key", f"There is a family “{family.key}” already; choose another key."
+        )
     return LabFamily.objects.create(
         key=family.key, name=family.name, definition=dict(definition), created_by=user
     )

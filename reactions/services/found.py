@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterable, Mapping
+
 from reactions.chemistry.mass_balance import IsolatedFraction, MassBalance, mass_balance
 from reactions.chemistry.masses import cage_molar_mass_g_per_mol
 from reactions.chemistry.structures import StructureError
@@ -19,18 +21,14 @@ def charged_mmol(reaction: Reaction) -> float | None:
     return cage.actual_mmol or cage.planned_mmol or None
 
 
-def balance_of(reaction: Reaction) -> MassBalance | None:
-    """Return the mass balance of the isolated fractions; None without fractions or cage."""
-    charged = charged_mmol(reaction)
-    fractions = [
-        IsolatedFraction(fraction.mass_mg, fraction.level, fraction.purity)
-        for fraction in Fraction.objects.filter(
-            step__reaction=reaction, is_carried_on=False
-        ).order_by("step__position", "position")
-    ]
+def balance_from(
+    reaction: Reaction, charged: float | None, fractions: Iterable[IsolatedFraction]
+) -> MassBalance | None:
+    """Return the mass balance of ``fractions`` and the recovered cage; None without either side."""
+    found = list(fractions)
     if reaction.recovered_cage_mg:
-        fractions.append(IsolatedFraction(reaction.recovered_cage_mg, 0))
-    if not charged or not fractions:
+        found.append(IsolatedFraction(reaction.recovered_cage_mg, 0))
+    if not charged or not found:
         return None
     try:
         cage_mass = cage_molar_mass_g_per_mol(reaction.cage)
@@ -38,17 +36,28 @@ def balance_of(reaction: Reaction) -> MassBalance | None:
         return None
     return mass_balance(
         charged,
-        fractions,
+        found,
         cage_g_per_mol=cage_mass,
         addition_g_per_mol=reaction.addend.mass_g_per_mol if reaction.addend else None,
         target_level=reaction.target_level,
     )
 
 
+def balance_of(reaction: Reaction) -> MassBalance | None:
+    """Return the mass balance of the isolated fractions; None without fractions or cage."""
+    rows = Fraction.objects.filter(step__reaction=reaction, is_carried_on=False)
+    fractions = [IsolatedFraction(row.mass_mg, row.level, row.purity) for row in rows]
+    return balance_from(reaction, charged_mmol(reaction), fractions)
+
+
 def composition_of(reading: Reading) -> list[float]:
     """Return the mole fractions of a reading as a list from level 0; levels not read are 0."""
-    levels = {row.level: row.mole_fraction for row in reading.levels.all()}
-    return [levels.get(level, 0.0) for level in range(max(levels, default=-1) + 1)]
+    return _as_list({row.level: row.mole_fraction for row in reading.levels.all()})
+
+
+def _as_list(mole_fraction_by_level: Mapping[int, float]) -> list[float]:
+    highest = max(mole_fraction_by_level, default=-1)
+    return [mole_fraction_by_level.get(level, 0.0) for level in range(highest + 1)]
 
 
 def latest_reading(reaction: Reaction) -> Reading | None:
@@ -66,23 +75,30 @@ def latest_reading(reaction: Reaction) -> Reading | None:
 
 
 def refresh_found(reaction: Reaction) -> None:
-    """Set the computed columns of ``reaction``; the caller saves it."""
+    """Set the computed columns of ``reaction`` from what is stored; the caller saves it."""
     reading = latest_reading(reaction)
-    composition = composition_of(reading) if reading else []
-    balance = balance_of(reaction)
-    reaction.found_composition = composition or None
+    by_level = {row.level: row.mole_fraction for row in reading.levels.all()} if reading else {}
+    set_found(reaction, by_level, balance_of(reaction))
+
+
+def set_found(
+    reaction: Reaction, mole_fraction_by_level: Mapping[int, float], balance: MassBalance | None
+) -> None:
+    """Set the computed columns of ``reaction`` from a composition and a mass balance."""
+    reaction.found_composition = _as_list(mole_fraction_by_level) or None
+    amounts = balance.level_mmol if balance else {}
     reached = [
-        level for level, share in enumerate(composition) if share >= LEAST_FRACTION_REACHED
-    ] + [level for level, amount in (balance.level_mmol if balance else {}).items() if amount > 0]
+        level for level, share in mole_fraction_by_level.items() if share >= LEAST_FRACTION_REACHED
+    ] + [level for level, amount in amounts.items() if amount > 0]
     reaction.level_reached = max(reached, default=None)
-    reaction.conversion = _conversion(reading, balance)
+    reaction.conversion = _conversion(mole_fraction_by_level, balance)
     reaction.yield_on_charged = balance.yield_on_charged if balance else None
     reaction.yield_on_consumed = balance.yield_on_consumed if balance else None
 
 
-def _conversion(reading: Reading | None, balance: MassBalance | None) -> float | None:
+def _conversion(by_level: Mapping[int, float], balance: MassBalance | None) -> float | None:
     """Return 1 − unreacted, from a reading that has level 0, else from the recovered cage."""
-    unreacted = [row.mole_fraction for row in reading.levels.all() if row.level == 0] if reading else []
-    if not unreacted and balance and balance.recovered_mmol:
-        unreacted = [balance.recovered_mmol / balance.charged_mmol]
-    return min(1.0, max(0.0, 1.0 - unreacted[0])) if unreacted else None
+    unreacted = by_level.get(0)
+    if unreacted is None and balance and balance.recovered_mmol:
+        unreacted = balance.recovered_mmol / balance.charged_mmol
+    return None if unreacted is None else min(1.0, max(0.0, 1.0 - unreacted))

@@ -67,9 +67,9 @@ class LineInput(Input):
     batch: Annotated[str, Field(max_length=80)] = ""
     equivalents: Annotated[float, Field(gt=0, le=1e6, allow_inf_nan=False)] | None = None
     equivalents_of: ShortText = ""
-    planned_mass_mg: Annotated[float, Field(gt=0, le=LARGEST_AMOUNT, allow_inf_nan=False)] | None = (
-        None
-    )
+    planned_mass_mg: (
+        Annotated[float, Field(gt=0, le=LARGEST_AMOUNT, allow_inf_nan=False)] | None
+    ) = None
     actual_mass_mg: Amount | None = None
     actual_volume_ml: Amount | None = None
     actual_mmol: Amount | None = None

@@ -108,10 +108,7 @@ def digest_of(reaction: Reaction) -> str:
             ReadingLevel.objects.filter(reading__reaction=reaction).order_by("id").values()
         ),
         "isolation": list(reaction.isolation_steps.order_by("position").values()),
-        "fractions": list(
-            Fraction.objects.filter(step__reaction=reaction).order_by("id").values()
-        ),
+        "fractions": list(Fraction.objects.filter(step__reaction=reaction).order_by("id").values()),
     }
     text = json.dumps(content, sort_keys=True, cls=DjangoJSONEncoder)
     return hashlib.sha256(text.encode()).hexdigest()
-

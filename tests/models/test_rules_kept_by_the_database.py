@@ -144,9 +144,7 @@ def test_no_fraction_or_level_of_a_signed_reaction_changes(signed):
             lambda row=row, column=column: type(row).objects.filter(pk=row.pk).update(**{column: 0})
         )
     refused(
-        lambda: Fraction.objects.create(
-            step=IsolationStep.objects.get(), position=2, mass_mg=1
-        )
+        lambda: Fraction.objects.create(step=IsolationStep.objects.get(), position=2, mass_mg=1)
     )
 
 

@@ -1,0 +1,209 @@
+"""Quantities as people type them: ``0.25 g``, ``1.2 mL``, ``3 mmol``, ``1.6 M``, ``2 h``, ``97 %``.
+
+A number without a unit is never guessed at: the message names the units to choose from. A comma is
+read as a decimal mark unless it could separate thousands (``1,250``), which is asked about.
+"""
+
+from __future__ import annotations
+
+import math
+import re
+from dataclasses import dataclass
+from typing import Literal
+
+Kind = Literal["mass", "volume", "amount", "molarity", "density", "temperature", "duration"]
+
+
+class QuantityError(ValueError):
+    """A quantity that can't be read; the message names what was typed and the remedy."""
+
+
+@dataclass(frozen=True)
+class Quantity:
+    """A value in the record's unit of its kind (mg, mL, mmol, mol/L, g/mL, °C, min)."""
+
+    kind: Kind
+    value: float
+    unit: str
+
+
+BASE_UNITS: dict[Kind, str] = {
+    "mass": "mg",
+    "volume": "mL",
+    "amount": "mmol",
+    "molarity": "mol/L",
+    "density": "g/mL",
+    "temperature": "°C",
+    "duration": "min",
+}
+
+# Each unit as people spell it, and how many of the record's unit one of it is.
+_FACTORS: dict[Kind, dict[str, float]] = {
+    "mass": {"kg": 1e6, "g": 1e3, "mg": 1.0, "µg": 1e-3},
+    "volume": {"L": 1e3, "mL": 1.0, "cm3": 1.0, "µL": 1e-3},
+    "amount": {"mol": 1e3, "mmol": 1.0, "µmol": 1e-3},
+    "molarity": {"M": 1.0, "mol/L": 1.0, "mmol/mL": 1.0, "mM": 1e-3, "mmol/L": 1e-3},
+    "density": {"g/mL": 1.0, "g/cm3": 1.0, "kg/L": 1.0, "g/L": 1e-3},
+    "temperature": {"°C": 1.0, "K": 1.0},
+    "duration": {"d": 1440.0, "h": 60.0, "min": 1.0, "s": 1 / 60},
+}
+_SPELLINGS = {
+    "ug": "µg", "μg": "µg", "gram": "g", "grams": "g",
+    "l": "L", "ml": "mL", "ul": "µL", "μl": "µL", "µl": "µL", "uL": "µL", "μL": "µL",
+    "cm³": "cm3", "cc": "cm3",
+    "umol": "µmol", "μmol": "µmol",
+    "mol/l": "mol/L", "mol·L-1": "mol/L", "mol L-1": "mol/L", "mmol/ml": "mmol/mL",
+    "mmol/l": "mmol/L",
+    "g/ml": "g/mL", "g/cm³": "g/cm3", "g/l": "g/L", "kg/l": "kg/L", "g cm-3": "g/cm3",
+    "C": "°C", "ºC": "°C", "°c": "°C", "deg C": "°C", "degC": "°C", "oC": "°C",
+    "days": "d", "day": "d", "hours": "h", "hour": "h", "hr": "h", "hrs": "h",
+    "minutes": "min", "minute": "min", "mins": "min", "seconds": "s", "second": "s", "sec": "s",
+}  # fmt: skip
+_EXAMPLES: dict[Kind, tuple[str, str]] = {
+    "mass": ("mg", "g"),
+    "volume": ("mL", "µL"),
+    "amount": ("mmol", "mol"),
+    "molarity": ("M", "mM"),
+    "density": ("g/mL", "g/L"),
+    "temperature": ("°C", "K"),
+    "duration": ("min", "h"),
+}
+_NAMES: dict[Kind, str] = {
+    "mass": "a mass",
+    "volume": "a volume",
+    "amount": "an amount of substance",
+    "molarity": "a concentration",
+    "density": "a density",
+    "temperature": "a temperature",
+    "duration": "a time",
+}
+
+_NUMBER = r"[-+−]?(?:\d+(?:[.,]\d*)?|[.,]\d+)(?:[eE][-+]?\d+)?"
+_VALUE = re.compile(rf"\s*({_NUMBER})\s*(.*?)\s*\Z", re.DOTALL)
+_DURATION_PART = re.compile(rf"({_NUMBER})\s*([a-zA-Z]+)")
+_MAY_BE_THOUSANDS = re.compile(r"[-+−]?[1-9]\d{0,2},\d{3}\Z")
+_ABSOLUTE_ZERO_C = -273.15
+_LONGEST = 100
+
+
+def mass_mg(text: str) -> float:
+    """Return a mass in mg (0 or more), such as ``0.25 g``. Raises QuantityError."""
+    return _of_kind(text, "mass")
+
+
+def volume_ml(text: str) -> float:
+    """Return a volume in mL (0 or more), such as ``500 µL``. Raises QuantityError."""
+    return _of_kind(text, "volume")
+
+
+def amount_mmol(text: str) -> float:
+    """Return an amount in mmol (0 or more), such as ``3 mmol``. Raises QuantityError."""
+    return _of_kind(text, "amount")
+
+
+def molarity_mol_per_l(text: str) -> float:
+    """Return a concentration in mol/L (0 or more), such as ``1.6 M``. Raises QuantityError."""
+    return _of_kind(text, "molarity")
+
+
+def density_g_per_ml(text: str) -> float:
+    """Return a density in g/mL (0 or more), such as ``0.867 g/mL``. Raises QuantityError."""
+    return _of_kind(text, "density")
+
+
+def temperature_c(text: str) -> float:
+    """Return a temperature in °C, such as ``383 K``. Raises QuantityError."""
+    return _of_kind(text, "temperature")
+
+
+def duration_min(text: str) -> float:
+    """Return a time in minutes (0 or more), such as ``1 h 30 min``. Raises QuantityError."""
+    shown = _checked(text)
+    parts = _DURATION_PART.findall(text)
+    if len(parts) > 1 and not _DURATION_PART.sub("", text).strip():
+        return sum(_of_kind(f"{number} {unit}", "duration") for number, unit in parts)
+    if not any(sign.isdigit() for sign in text):
+        raise QuantityError(
+            f"“{shown}” is no length of time; write it in min, h or d, such as 16 h."
+        )
+    return _of_kind(text, "duration")
+
+
+def fraction(text: str) -> float:
+    """Return a share from 0 to 1, typed as ``97 %`` or ``0.97``. Raises QuantityError."""
+    shown = _checked(text)
+    value, unit = _split(text)
+    if unit == "%":
+        value /= 100
+    elif unit:
+        raise QuantityError(f"“{shown}” is no share; write 97 % or 0.97.")
+    elif value > 1:
+        raise QuantityError(f"{shown} is more than 1; write {shown} % or {value / 100:g}.")
+    if not 0 <= value <= 1:
+        raise QuantityError(f"{shown} is outside 0 to 100 %; give a share within it.")
+    return value
+
+
+def quantity(text: str) -> Quantity:
+    """Return a mass, volume, amount of substance or concentration, told by its unit."""
+    shown = _checked(text)
+    _, unit = _split(text)
+    if not unit:
+        raise QuantityError(
+            f"{shown} has no unit; write {shown} mg, {shown} mL, {shown} mmol or {shown} M."
+        )
+    for kind in ("mass", "volume", "amount", "molarity"):
+        if _spelt(unit) in _FACTORS[kind]:
+            return Quantity(kind, _of_kind(text, kind), BASE_UNITS[kind])
+    raise QuantityError(f"“{unit}” is no unit known here; use mg, g, mL, µL, mmol, mol, M or mM.")
+
+
+def _checked(text: str) -> str:
+    shown = text.strip()
+    if not shown:
+        raise QuantityError("Nothing is typed; give a number with its unit.")
+    if len(shown) > _LONGEST:
+        raise QuantityError(f"{len(shown)} characters are too long for a quantity.")
+    return shown
+
+
+def _split(text: str) -> tuple[float, str]:
+    """Return the number and the unit as typed."""
+    shown = _checked(text)
+    found = _VALUE.match(text)
+    if not found:
+        raise QuantityError(f"“{shown}” is not a number with a unit; write it like 250 mg.")
+    digits, unit = found.groups()
+    if _MAY_BE_THOUSANDS.match(digits):
+        raise QuantityError(
+            f"“{digits}” can be read two ways; write {digits.replace(',', '')} or "
+            f"{digits.replace(',', '.')}."
+        )
+    value = float(digits.replace(",", ".").replace("−", "-"))
+    if not math.isfinite(value):
+        raise QuantityError(f"“{shown}” is not a finite number.")
+    return value, unit
+
+
+def _spelt(unit: str) -> str:
+    return _SPELLINGS.get(unit, unit)
+
+
+def _of_kind(text: str, kind: Kind) -> float:
+    shown = _checked(text)
+    value, unit = _split(text)
+    first, second = _EXAMPLES[kind]
+    if not unit:
+        raise QuantityError(f"{shown} has no unit; write {shown} {first} or {shown} {second}.")
+    factor = _FACTORS[kind].get(_spelt(unit))
+    if factor is None:
+        units = ", ".join(_FACTORS[kind])
+        raise QuantityError(f"“{unit}” is no unit of {_NAMES[kind]}; use {units}.")
+    if kind == "temperature":
+        celsius = value - 273.15 if _spelt(unit) == "K" else value
+        if celsius < _ABSOLUTE_ZERO_C:
+            raise QuantityError(f"{shown} lies below absolute zero; give at least −273.15 °C.")
+        return celsius
+    if value < 0:
+        raise QuantityError(f"{shown} is below 0; give 0 or more.")
+    return value * factor

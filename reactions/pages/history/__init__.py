@@ -1,0 +1,1 @@
+"""Bringing a lab's history in from its spreadsheet."""
