@@ -13,14 +13,13 @@ Source of masses: RDKit's table of IUPAC atomic weights and isotope masses.
 
 from __future__ import annotations
 
-import re
 from dataclasses import dataclass
 from functools import lru_cache
 
 from rdkit import Chem, rdBase
 from rdkit.Chem import Descriptors, rdMolDescriptors
 
-from reactions.chemistry.attachment import plain_molecule, read_attached
+from reactions.chemistry.attachment import group_formula, plain_molecule, read_attached
 from reactions.chemistry.structures import StructureError
 from reactions.chemistry.tables import read_csv_table
 
@@ -78,7 +77,7 @@ def read_addend(structure: str) -> AddendStructure:
         return AddendStructure(
             smiles=smiles,
             attachment_points=sum(atom.GetAtomicNum() == 0 for atom in molecule.GetAtoms()),
-            formula=_formula(molecule),
+            formula=group_formula(molecule),
             mass_g_per_mol=Descriptors.MolWt(molecule),  # type: ignore[attr-defined]
             monoisotopic_mass=rdMolDescriptors.CalcExactMolWt(molecule),
             search_smiles=_kekule_smiles(_on_cage_atoms(molecule)),
@@ -146,11 +145,6 @@ def _forget_geometry_fixed_by_cage(addend: Chem.Mol) -> None:
             for end in (bond.GetBeginAtom(), bond.GetEndAtom()):
                 for neighbour in end.GetBonds():
                     neighbour.SetBondDir(Chem.BondDir.NONE)
-
-
-def _formula(molecule: Chem.Mol) -> str:
-    formula = rdMolDescriptors.CalcMolFormula(molecule, True, True)
-    return re.sub(r"\*\d*", "", formula)
 
 
 def _on_cage_atoms(addend: Chem.Mol) -> Chem.Mol:

@@ -10,6 +10,7 @@ from __future__ import annotations
 import re
 
 from rdkit import Chem
+from rdkit.Chem import rdMolDescriptors
 
 from reactions.chemistry.drawings import is_molfile, sanitised, unsanitised
 from reactions.chemistry.structures import StructureError
@@ -53,6 +54,12 @@ def plain_molecule(smiles: str) -> Chem.Mol | None:
         return None
     Chem.AssignStereochemistry(molecule, cleanIt=True, force=True)
     return molecule
+
+
+def group_formula(molecule: Chem.Mol) -> str:
+    """Return the formula of what is attached, in Hill order, without the attachment points."""
+    formula = rdMolDescriptors.CalcMolFormula(molecule, True, True)
+    return re.sub(r"\*\d*", "", formula)
 
 
 def _refuse_queries(molecule: Chem.RWMol) -> None:
