@@ -17,6 +17,17 @@ from reactions.chemistry.drawings import sanitised, unsanitised
 from reactions.chemistry.structures import StructureError
 
 MODELS = ("independent_sites", "sequential", "poisson")
+ROLES = (
+    "reagent",
+    "base",
+    "acid",
+    "aldehyde",
+    "catalyst",
+    "oxidant",
+    "reductant",
+    "additive",
+    "quench",
+)
 _KEY = re.compile(r"[a-z0-9]+(_[a-z0-9]+)*")
 _ABSOLUTE_ZERO_C = -273.15
 _Value = TypeVar("_Value")
@@ -36,7 +47,7 @@ class FamilyError(ValueError):
 
 @dataclass(frozen=True)
 class FamilyRole:
-    """A part that a substance plays in one addition.
+    """A part that a substance plays in one addition; ``role`` is one of ``ROLES``.
 
     ``equivalents_per_addition`` is the usual mol charged per mol of additions wanted (None where
     practice varies too much to say); ``substance`` is a key of the substance table, or None where
@@ -188,13 +199,19 @@ class _Fields:
 
 def _role(fields: _Fields) -> FamilyRole:
     values: dict[str, Any] = {
-        "role": fields.take("role", _text),
+        "role": fields.take("role", _role_name),
         "name": fields.take("name", _text),
         "equivalents_per_addition": fields.take("equivalents_per_addition", _positive, None),
         "substance": fields.take("substance", _text, None),
     }
     fields.refuse_unknown(values)
     return FamilyRole(**values)
+
+
+def _role_name(value: Any) -> str:
+    if value not in ROLES:
+        raise ValueError(f"{value!r} is no role: choose {', '.join(ROLES)}")
+    return str(value)
 
 
 def _by_product(fields: _Fields) -> ByProduct:

@@ -21,6 +21,7 @@ from reactions.chemistry.families import (
     question_level,
 )
 from reactions.chemistry.tables import read_json_table
+from reactions.models import ComponentRole
 
 KEYS = list(families())
 
@@ -98,6 +99,11 @@ def test_each_family_is_complete(key: str) -> None:
     assert row.usual_temperature_c is not None
     assert row.roles
     assert row.highest_level
+
+
+@pytest.mark.parametrize("key", KEYS)
+def test_roles_are_those_of_a_weighing_list(key: str) -> None:
+    assert {role.role for role in family(key).roles} <= set(ComponentRole.values)
 
 
 @pytest.mark.parametrize("key", KEYS)
@@ -316,6 +322,7 @@ def test_faulty_roles_and_by_products_are_named_by_their_place() -> None:
                 roles=[
                     {"role": "base", "name": "pyridine"},
                     {"role": "reagent", "equivalents_per_addition": float("inf")},
+                    {"role": "bystander", "name": "argon"},
                 ],
                 by_products=[{"name": "gas", "smiles": "C1CC", "per_addition": 0}],
             )
@@ -323,6 +330,7 @@ def test_faulty_roles_and_by_products_are_named_by_their_place() -> None:
     assert set(caught.value.errors) == {
         "roles.1.name",
         "roles.1.equivalents_per_addition",
+        "roles.2.role",
         "by_products.0.smiles",
         "by_products.0.per_addition",
     }
