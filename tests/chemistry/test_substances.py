@@ -7,6 +7,7 @@ from rdkit.Chem import Descriptors
 
 from reactions.chemistry.drawings import sanitised, unsanitised
 from reactions.chemistry.families import families
+from reactions.chemistry.solvents import solvent, solvents
 from reactions.chemistry.substances import (
     UnknownSubstanceError,
     find_substance,
@@ -95,8 +96,8 @@ def test_every_reagent_and_solvent_of_the_families_is_listed() -> None:
         for role in family.roles:
             if role.substance is not None:
                 assert role.substance in substances(), (family.key, role.substance)
-        for solvent in family.usual_solvents:
-            assert find_substance(solvent) is not None, (family.key, solvent)
+        for usual in family.usual_solvents:
+            assert find_substance(usual) is not None, (family.key, usual)
 
 
 def test_roles_name_a_substance_of_the_table_where_one_serves() -> None:
@@ -162,3 +163,18 @@ def test_an_acid_and_its_hydrate_are_told_apart() -> None:
 def test_an_unknown_key_names_its_neighbours() -> None:
     with pytest.raises(UnknownSubstanceError, match="toluene"):
         substance("tolune")
+
+
+def test_every_solvent_is_listed_with_the_same_density() -> None:
+    for name, row in solvents().items():
+        found = find_substance(name, row.smiles)
+        assert found is not None, name
+        assert found.cas_number == row.cas_number
+        if found.density_g_per_ml and row.density_g_per_ml:
+            assert found.density_g_per_ml == pytest.approx(row.density_g_per_ml, abs=0.006)
+
+
+def test_every_usual_solvent_of_the_families_is_in_the_table_of_solvents() -> None:
+    for family in families().values():
+        for name in family.usual_solvents:
+            assert solvent(name).name == name

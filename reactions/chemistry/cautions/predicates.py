@@ -13,6 +13,13 @@ from rdkit.Chem import Descriptors
 
 from reactions.chemistry.cautions.energetic import azide_ratio, carbons_per_energetic_group
 from reactions.chemistry.cautions.plan import Member, Plan
+from reactions.chemistry.cautions.solvent_limits import (
+    above_autoignition,
+    above_boiling_point,
+    above_flash_point,
+    in_degrees,
+    solvent_unknown,
+)
 from reactions.chemistry.families import gas_evolved_ml
 
 Words = Mapping[str, str]
@@ -51,7 +58,7 @@ def hotter_than(plan: Plan, arguments: Mapping[str, Any]) -> Words | None:
     temperature_c = plan.conditions.temperature_c
     if temperature_c is None or temperature_c <= arguments["temperature_c"]:
         return None
-    return {"temperature": f"{temperature_c:g} °C"}
+    return {"temperature": in_degrees(temperature_c)}
 
 
 def light_is(plan: Plan, arguments: Mapping[str, Any]) -> Words | None:
@@ -183,5 +190,9 @@ PREDICATES: Mapping[str, Predicate] = {
         gas_evolved,
         family_sets_free,
         hydrogen_from_mass,
+        above_boiling_point,
+        above_flash_point,
+        above_autoignition,
+        solvent_unknown,
     )
 }

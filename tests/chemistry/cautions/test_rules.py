@@ -88,6 +88,19 @@ PLANS: dict[str, tuple[Plan, Plan]] = {
         (["lithium"], {"atmosphere": "argon"}),
     ),
     "carbon_disulfide": (([], {"solvent": "carbon disulfide"}), ([], {"solvent": "toluene"})),
+    "above_boiling_point": (
+        ([], {"solvent": "toluene", "temperature_c": 150}),
+        ([], {"solvent": "toluene", "temperature_c": 111}),
+    ),
+    "above_flash_point": (
+        ([], {"solvent": "1,2-dichlorobenzene", "temperature_c": 100}),
+        ([], {"solvent": "1,2-dichlorobenzene", "temperature_c": 25}),
+    ),
+    "above_autoignition": (
+        ([], {"solvent": "CS2", "temperature_c": 100}),
+        ([], {"solvent": "CS2", "temperature_c": 46}),
+    ),
+    "solvent_unknown": (([], {"solvent": "liquid X"}), ([], {"solvent": "ODCB"})),
     "osmium_tetroxide": ((["OsO4"], {}), (["ozone"], {})),
     "bromine_or_chlorine": ((["bromine"], {}), (["potassium iodide"], {})),
     "halogen_incompatible": ((["iodine", "ammonia"], {}), (["iodine", "toluene"], {})),

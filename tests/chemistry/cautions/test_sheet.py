@@ -141,3 +141,17 @@ def test_the_hydrogen_of_a_weighed_hydride_is_given_in_volume(
     sheet = cautions_for([PlannedSubstance(name, None, mass_mg=mass_mg)], PLAIN)
     (rule,) = [rule for rule in sheet.rules if rule.key == "hydride_hydrogen"]
     assert f"{volume} of hydrogen" in rule.text
+
+
+# Flash point −30 °C: IEC 60079-20-1, as in the chemicals package.
+def test_a_negative_limit_is_printed_with_its_sign() -> None:
+    sheet = cautions_for([], PlannedConditions(solvent="carbon disulfide", temperature_c=20))
+    (rule,) = [rule for rule in sheet.rules if rule.key == "above_flash_point"]
+    assert "20 °C is above the flash point of carbon disulfide (−30 °C)" in rule.text
+
+
+def test_a_solvent_known_by_its_structure_is_checked_under_the_name_typed() -> None:
+    planned = PlannedSubstance("the solvent", "Cc1ccccc1", role="solvent")
+    sheet = cautions_for([planned], PlannedConditions(temperature_c=150))
+    (rule,) = [rule for rule in sheet.rules if rule.key == "above_boiling_point"]
+    assert "the solvent (110.6 °C)" in rule.text
