@@ -13,7 +13,9 @@ from multiprocessing.connection import Connection
 
 from rdkit import rdBase
 
-import reactions.chemistry.addends  # noqa: F401  (so that the first call finds it loaded)
+# So that the first call finds them loaded.
+import reactions.chemistry.addends
+import reactions.chemistry.substructure  # noqa: F401
 
 
 def serve(channel: Connection) -> None:
