@@ -6,4 +6,6 @@ from django.urls import URLPattern, URLResolver, include, path
 
 urlpatterns: list[URLPattern | URLResolver] = [
     path("", include("reactions.pages.accounts.urls")),
+    path("", include("reactions.pages.campaigns.urls")),
+    path("", include("reactions.pages.sheet.urls")),
 ]

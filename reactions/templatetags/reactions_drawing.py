@@ -9,11 +9,12 @@ from django import template
 from django.utils.safestring import SafeString
 
 from reactions.pages.drawing.levels import level_name
-from reactions.pages.drawing.strips import draw_strip, draw_swatch
+from reactions.pages.drawing.strips import draw_strip, draw_swatch, in_words
 
 register = template.Library()
 register.filter("level_name", level_name)
 
+PREDICTED = "predicted"
 _SHOWN_IN_TABLE = 0.0005
 
 
@@ -35,7 +36,7 @@ def composition_strip(
     names beside the strips. ``low``: for a row of a list. ``table``: with the values beneath.
     ``only_found``: the found one alone, under ``name``.
     """
-    rows = [] if only_found else [_row("predicted", predicted, False)]
+    rows = [] if only_found else [_row(PREDICTED, predicted, False)]
     rows.append(_row(name, found, higher_lumped))
     highest = max((row["highest"] for row in rows), default=0)
     for row in rows:
@@ -61,12 +62,28 @@ def _row(name: str, composition: Sequence[float] | None, is_lumped: bool) -> dic
         "name": name,
         "composition": values,
         "highest": max(shown, default=0),
-        "strip": draw_strip(values, name=name, is_higher_lumped=is_lumped) if values else "",
+        "strip": draw_strip(
+            values, name=name, is_higher_lumped=is_lumped, is_pale=name == PREDICTED
+        )
+        if values
+        else "",
     }
 
 
 def _share(composition: Sequence[float], level: int) -> str:
     return f"{100 * composition[level]:.1f} %" if level < len(composition) else "–"
+
+
+@register.simple_tag
+def composition_words(composition: Sequence[float], higher_lumped: bool = False) -> str:
+    """Say a composition in words, such as “unreacted 36.2 %, mono 40.1 %”."""
+    return in_words(composition, is_higher_lumped=higher_lumped)
+
+
+@register.inclusion_tag("reactions/level_key.html")
+def level_key(highest: int = 3) -> dict[str, Any]:
+    """Name the levels from 0 to ``highest`` beside their colours."""
+    return {"levels": [(level, level_name(level)) for level in range(highest + 1)]}
 
 
 @register.simple_tag

@@ -73,9 +73,16 @@ def in_words(composition: Sequence[float], *, is_higher_lumped: bool = False) ->
 
 
 def draw_strip(
-    composition: Sequence[float], *, name: str, is_higher_lumped: bool = False
+    composition: Sequence[float],
+    *,
+    name: str,
+    is_higher_lumped: bool = False,
+    is_pale: bool = False,
 ) -> SafeString:
-    """Return the strip of a composition as SVG; ``name`` says what it is, such as ``predicted``."""
+    """Return the strip of a composition as SVG; ``name`` says what it is, such as ``found``.
+
+    ``is_pale`` is how a composition is drawn that was predicted, not measured.
+    """
     words = in_words(composition, is_higher_lumped=is_higher_lumped)
     drawn = format_html_join(
         "",
@@ -93,8 +100,9 @@ def draw_strip(
         ),
     )
     return format_html(
-        '<svg class="strip" role="img" aria-label="{}: {}">{}'
+        '<svg class="strip{}" role="img" aria-label="{}: {}">{}'
         '<rect class="strip-ground" width="100%" height="100%"/></svg>',
+        " strip-pale" if is_pale else "",
         name,
         words,
         drawn,

@@ -1,0 +1,1 @@
+"""Campaigns: the list, a campaign with its reactions, and its members."""

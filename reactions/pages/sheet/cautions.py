@@ -1,0 +1,60 @@
+"""The cautions of a record, from its weighing list, isolation and conditions."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+
+from reactions.chemistry.cautions import (
+    CautionSheet,
+    PlannedConditions,
+    PlannedSubstance,
+    cautions_for,
+)
+from reactions.chemistry.families import Family
+from reactions.models import Component, ComponentRole, Reaction
+
+_ACTS_ON_THE_CAGE = (ComponentRole.REAGENT,)
+
+
+def cautions_of(
+    reaction: Reaction, components: Sequence[Component], family: Family | None
+) -> CautionSheet:
+    """Return the cautions of what is on the weighing list and in the conditions."""
+    cage = next((row for row in components if row.role == ComponentRole.CAGE), None)
+    return cautions_for(
+        [_planned(row) for row in components],
+        PlannedConditions(
+            solvent=reaction.solvent or None,
+            temperature_c=reaction.temperature_c,
+            cage_mmol=_first(cage.actual_mmol, cage.planned_mmol) if cage else None,
+            family_key=reaction.family_key,
+            level=reaction.target_level,
+            light=reaction.light or None,
+            atmosphere=reaction.atmosphere or None,
+            equivalents=_reagent_equivalents(components),
+            family=family,
+        ),
+    )
+
+
+def _planned(row: Component) -> PlannedSubstance:
+    return PlannedSubstance(
+        name=row.name,
+        smiles=row.smiles or None,
+        role=row.role,
+        mass_mg=_first(row.actual_mass_mg, row.planned_mass_mg),
+    )
+
+
+def _reagent_equivalents(components: Iterable[Component]) -> float | None:
+    """Return the most equivalents of any reagent, the actual ones where they are known."""
+    amounts = [
+        _first(row.actual_equivalents, row.equivalents)
+        for row in components
+        if row.role in _ACTS_ON_THE_CAGE
+    ]
+    return max((amount for amount in amounts if amount is not None), default=None)
+
+
+def _first(actual: float | None, planned: float | None) -> float | None:
+    return planned if actual is None else actual
