@@ -63,10 +63,13 @@ def short(text: str) -> str:
 def _from_molfile(text: str) -> Chem.Mol:
     try:
         molecule = Chem.MolFromMolBlock(text, sanitize=False, removeHs=False)
-    except RuntimeError:  # an element symbol that RDKit doesn't know
+    except RuntimeError:
         molecule = None
     if molecule is None:
-        raise StructureError("The drawing can't be read as a molfile; draw it again.")
+        raise StructureError(
+            "The drawing can't be read as a molfile; give each atom an element, "
+            "and draw R1, A or * where the structure is attached."
+        )
     Chem.ExpandAttachmentPoints(molecule)
     return molecule
 

@@ -218,7 +218,8 @@ def test_wedges_of_a_molfile_are_read():
         ("*C~C", "several kinds of bond"),
         ("*" + "C" * 400, "more than 300"),
         ("*" + "C" * 30_000, "too long"),
-        (MOLFILE.format(point="?  ", rgp=""), "can't be read as a molfile"),
+        (MOLFILE.format(point="?  ", rgp=""), "give each atom an element"),
+        (MOLFILE.format(point="*  ", rgp="")[:200] + "\nM  END", "can't be read as a molfile"),
         (MOLFILE.format(point="Q  ", rgp=""), "stands for several elements"),
     ],
 )
