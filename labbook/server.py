@@ -8,6 +8,7 @@ mistake does no harm.
 from __future__ import annotations
 
 import argparse
+import fcntl
 import os
 import signal
 import socket
@@ -68,6 +69,18 @@ def _listen(host: str, port: int) -> socket.socket:
     return listener
 
 
+def _be_alone_with(folder: Path) -> None:
+    """Refuse to be a second process on the same embedded book, whose tasks would go astray."""
+    handle = os.open(folder / "serving", os.O_RDWR | os.O_CREAT, 0o600)
+    try:
+        fcntl.flock(handle, fcntl.LOCK_EX | fcntl.LOCK_NB)
+    except BlockingIOError:
+        sys.exit(
+            f"Another server is serving the book in {folder}. Stop it, or choose other --data."
+        )
+    # The lock lasts as long as the file stays open: until this process ends.
+
+
 def _address(listener: socket.socket) -> str:
     host, port = listener.getsockname()[:2]
     if host in _EVERY_ADDRESS:
@@ -97,6 +110,7 @@ def _serve(listener: socket.socket) -> bool:
     from labbook.celery import application as celery_application
     from labbook.embedded_worker import EmbeddedWorker, is_embedded
     from labbook.wsgi import application
+    from reactions.tasks import take_up_interrupted_imports
 
     server = waitress.create_server(
         application, sockets=[listener], threads=_THREADS, ident="labbook"
@@ -104,6 +118,7 @@ def _serve(listener: socket.socket) -> bool:
     worker = EmbeddedWorker(celery_application) if is_embedded() else None
     if worker:
         worker.start()
+        take_up_interrupted_imports()
     try:
         server.run()
     finally:
@@ -127,8 +142,11 @@ def main(words: list[str] | None = None) -> None:
     from django.conf import settings
 
     from labbook.accounts.log_ins import FILE_NAME
+    from labbook.embedded_worker import is_embedded
     from labbook.first_start import prepare_book
 
+    if is_embedded():
+        _be_alone_with(settings.DATA_DIR)
     try:
         start = prepare_book(is_empty=arguments.empty, account=arguments.account)
     except ValidationError as error:

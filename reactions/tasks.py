@@ -7,7 +7,7 @@ from django.db import transaction
 from kombu.exceptions import OperationalError
 
 from reactions.models import HistoryImport, ImportState
-from reactions.services.history.importing import run_import
+from reactions.services.history.importing import run_import, take_up_interrupted
 
 
 @shared_task(name="reactions.import_history")
@@ -22,6 +22,15 @@ def queue_import(job: HistoryImport) -> None:
     Where no broker answers, the import is marked failed with the reason, so that nobody waits.
     """
     transaction.on_commit(lambda: _send(job.pk))
+
+
+def take_up_interrupted_imports() -> None:
+    """Hand over the imports that a stopped server left waiting or running.
+
+    Only for a server process that is alone with its book and whose broker forgets on stopping.
+    """
+    for job_id in take_up_interrupted():
+        _send(job_id)
 
 
 def _send(job_id: int) -> None:

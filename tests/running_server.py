@@ -124,7 +124,8 @@ def start_server(tmp_path_factory):
         data = data or tmp_path_factory.mktemp("server")
         logs = tmp_path_factory.mktemp("logs")
         environment = os.environ | databases.fresh() | {"LABBOOK_DATA": str(data)} | variables
-        is_embedded = not environment.get("LABBOOK_BROKER_URL")
+        broker = environment.get("LABBOOK_BROKER_URL", "memory://")
+        is_embedded = broker.startswith("memory:")
         if not is_embedded:
             environment["LABBOOK_TASK_QUEUE"] = logs.name + secrets.token_hex(4)
         server = _launch("labbook.server", "--port", "0", *words, environment=environment,

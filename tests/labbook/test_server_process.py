@@ -76,5 +76,11 @@ def test_a_port_in_use_is_said_before_anything_is_written(start_server, empty_bo
     assert not (tmp_path / "second").exists()
 
 
+def test_a_second_server_on_the_same_embedded_book_is_refused(start_server, tmp_path):
+    start_server("--empty", data=tmp_path, LABBOOK_BROKER_URL="memory://")
+    with pytest.raises(AssertionError, match="Another server is serving the book"):
+        start_server("--empty", data=tmp_path, LABBOOK_BROKER_URL="memory://")
+
+
 def test_it_ends_in_good_order_when_told_to(start_server):
     assert start_server("--empty").stop() == 0

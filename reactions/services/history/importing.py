@@ -189,14 +189,26 @@ def run_import(job_id: int) -> None:
             _finish(job, ImportState.REFUSED, problems=problems)
             return
         _heed_cancel(job)
-        created = store_rows(job, rows, structures)
+        # Said to be done with its rows or not at all: cut off before, it can safely run again.
+        with transaction.atomic():
+            created = store_rows(job, rows, structures)
+            _finish(job, ImportState.DONE, created_count=created)
     except ImportCancelled:
         _finish(job, ImportState.CANCELLED)
     except Exception as error:
         _finish(job, ImportState.FAILED, message=f"{type(error).__name__}: {error}"[:300])
         raise
-    else:
-        _finish(job, ImportState.DONE, created_count=created)
+
+
+def take_up_interrupted() -> list[int]:
+    """Queue again what a stopped server left running; return all that wait for a worker, by id.
+
+    Only for a server process that is alone with its book: there no worker can be at a running one.
+    """
+    HistoryImport.objects.filter(state=ImportState.RUNNING).update(
+        state=ImportState.QUEUED, rows_done=0
+    )
+    return list(HistoryImport.objects.filter(state=ImportState.QUEUED).values_list("pk", flat=True))
 
 
 def _checked(
