@@ -47,10 +47,10 @@ def sanitised(molecule: Chem.RWMol) -> Chem.Mol:
     """
     bind_ligands_datively(molecule)
     Chem.SanitizeMol(molecule, _TIDY)
-    problems = Chem.DetectChemistryProblems(molecule)
-    if problems:
-        raise StructureError(_in_words(problems[0], molecule))
-    Chem.SanitizeMol(molecule)
+    try:
+        Chem.SanitizeMol(molecule)
+    except ValueError as error:
+        raise StructureError(_in_words(str(error), molecule)) from error
     Chem.AssignStereochemistry(molecule, cleanIt=True, force=True)
     return Chem.RemoveHs(molecule)
 
@@ -83,13 +83,16 @@ def _from_smiles(text: str) -> Chem.Mol:
     return molecule
 
 
-def _in_words(problem: Chem.MolSanitizeException, molecule: Chem.RWMol) -> str:
-    kind: str = problem.GetType()  # type: ignore[attr-defined]
-    if kind in {"AtomValenceException", "AtomKekulizeException"}:
-        atom = molecule.GetAtomWithIdx(problem.GetAtomIdx())  # type: ignore[attr-defined]
+def _in_words(problem: str, molecule: Chem.RWMol) -> str:
+    """Say in a chemist's words what RDKit found (``Explicit valence for atom # 3 C, 5, …``)."""
+    at = re.search(r"atom #? ?(\d+)", problem)
+    place = ""
+    if at:
+        atom = molecule.GetAtomWithIdx(int(at[1]))
         place = f"{atom.GetSymbol()} (atom {atom.GetIdx() + 1})"
-        if kind == "AtomValenceException":
-            return f"{place} has too many bonds; take one off or give the atom its charge."
+    if place and "valence" in problem:
+        return f"{place} has too many bonds; take one off or give the atom its charge."
+    if place and "non-ring" in problem:
         return f"{place} is written as aromatic but stands in no ring; write it as a plain atom."
     return (
         "The aromatic ring can't be given alternating bonds; "

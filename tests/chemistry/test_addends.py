@@ -226,3 +226,21 @@ def test_wedges_of_a_molfile_are_read():
 def test_a_structure_that_is_no_addend_is_refused_in_words(structure, message):
     with pytest.raises(StructureError, match=message):
         read_addend(structure)
+
+
+PIECES = ["C", "c", "N", "n", "O", "P", "[Pt]", "(", ")", "1", "2", "=", "#", "*", "[nH]", "[O-]"]
+PIECES += ["/", "\\", "[C@H]", "->", "[*:1]", "[H]", "c1ccccc1", ".", ":", "~", "$", "[", "%10"]
+
+
+@given(st.sampled_from(NAMES), st.lists(st.tuples(st.floats(0, 1), st.sampled_from(PIECES))))
+def test_whatever_is_typed_is_an_addend_or_refused_in_words(name, changes):
+    text = named(name).smiles
+    for where, piece in changes:
+        place = int(where * len(text))
+        text = text[:place] + piece + text[place + 1 :]
+    refusal = ""
+    try:
+        addend = read_addend(text)
+    except StructureError as error:
+        refusal = str(error)
+    assert refusal.endswith(".") or read_addend(addend.smiles) == addend

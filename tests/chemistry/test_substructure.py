@@ -157,6 +157,7 @@ def test_auto_tells_smiles_from_smarts():
     assert found("[CH3]OC=O") == found("[CH3]OC=O", "smiles")
 
 
+KINDS = ("auto", "smiles", "smarts", "molfile")
 QUERIES = [
     *("C", "C1CC1", "C1CNCC1", "c1ccccc1", "C=O", "CC(=O)OC", "C#N", "*C*", "P[Pt]", "[Os]"),
     *("[CX4]", "[!#6]", "[R2]", "[#6]~[#7,#8]", "[$(C=O)]", "[C;!$(C=O)]", "c:c", "C=,:C", "[#1]"),
@@ -232,6 +233,16 @@ def test_hydrogen_named_in_smarts_is_not_for_a_database():
 def test_a_query_says_what_a_database_would_get_wrong(text, cage, database):
     query = outline_query(text)
     assert (query.may_match_cage, query.is_for_database) == (cage, database)
+
+
+@given(st.text("CcNnO*[]()#=:~@!$&;,.123HX+-RA", max_size=12), st.sampled_from(KINDS))
+def test_whatever_is_typed_is_a_query_or_refused_in_words(text, kind):
+    refusal = ""
+    try:
+        query = compile_query(text, kind)
+    except StructureError as error:
+        refusal = str(error)
+    assert refusal.endswith(".") or len(match(query, FORMS.values())) <= len(FORMS)
 
 
 @pytest.mark.parametrize(
