@@ -20,6 +20,7 @@ from reactions.models import (
     Reading,
     known_families,
 )
+from reactions.models.reactions import ReactionQuerySet
 from reactions.search.language import SearchQuery
 from reactions.search.structures import addends_containing
 
@@ -123,7 +124,7 @@ def answer(query: SearchQuery, user: AbstractBaseUser) -> Answer:
     return Answer(query, hits, _tree(found, query, families), families)
 
 
-def _in_any_family(query: SearchQuery, user: AbstractBaseUser) -> QuerySet[Reaction]:
+def _in_any_family(query: SearchQuery, user: AbstractBaseUser) -> ReactionQuerySet:
     found = Reaction.objects.visible_to(user)
     if query.campaign:
         if not Campaign.objects.visible_to(user).filter(code=query.campaign).exists():
@@ -156,15 +157,15 @@ def _holds(word: str) -> Q:
     """Return the condition that a word stands somewhere in the record."""
     here = OuterRef("pk")
     code, _, number = word.upper().rpartition("-")
-    is_label = Q(campaign__code=code, number=int(number)) if _is_number(number) else Q(pk__in=[])
+    label = Q(campaign__code=code, number=int(number)) if _is_number(number) else Q(pk__in=[])
     return (
         Q(title__icontains=word)
         | Q(conclusion__icontains=word)
         | Q(addend__name__icontains=word)
-        | is_label
-        | Exists(Component.objects.filter(reaction=here, name__icontains=word))
-        | Exists(Observation.objects.filter(reaction=here, text__icontains=word))
-        | Exists(Reading.objects.filter(reaction=here, note__icontains=word))
+        | label
+        | Q(Exists(Component.objects.filter(reaction=here, name__icontains=word)))
+        | Q(Exists(Observation.objects.filter(reaction=here, text__icontains=word)))
+        | Q(Exists(Reading.objects.filter(reaction=here, note__icontains=word)))
     )
 
 
@@ -172,7 +173,7 @@ def _is_number(text: str) -> bool:
     return text.isascii() and text.isdigit() and len(text) < 9
 
 
-def _with_substructure(found: QuerySet[Reaction], query: SearchQuery) -> QuerySet[Reaction]:
+def _with_substructure(found: ReactionQuerySet, query: SearchQuery) -> ReactionQuerySet:
     if not query.substructure:
         return found
     among = Addend.objects.filter(pk__in=found.order_by().values("addend_id"))
@@ -184,8 +185,8 @@ def _with_substructure(found: QuerySet[Reaction], query: SearchQuery) -> QuerySe
 
 
 def _in_families(
-    found: QuerySet[Reaction], query: SearchQuery, families: Mapping[str, Family]
-) -> QuerySet[Reaction]:
+    found: ReactionQuerySet, query: SearchQuery, families: Mapping[str, Family]
+) -> ReactionQuerySet:
     if not query.family:
         return found
     branches = {row.branch for row in families.values()}
@@ -205,7 +206,7 @@ def _in_families(
     return found.filter(condition | Q(family_key__in=sorted(wanted)))
 
 
-def _in_order(found: QuerySet[Reaction], query: SearchQuery) -> QuerySet[Reaction]:
+def _in_order(found: ReactionQuerySet, query: SearchQuery) -> ReactionQuerySet:
     is_down = query.sort.startswith("-")
     columns = [F(column) for column in _COLUMN_OF_SORT[query.sort.removeprefix("-")]]
     order = [
@@ -216,7 +217,7 @@ def _in_order(found: QuerySet[Reaction], query: SearchQuery) -> QuerySet[Reactio
 
 
 def _tree(
-    found: QuerySet[Reaction], query: SearchQuery, families: Mapping[str, Family]
+    found: ReactionQuerySet, query: SearchQuery, families: Mapping[str, Family]
 ) -> tuple[BranchCount, ...]:
     rows = found.order_by().values_list("family_key").annotate(count=Count("pk"))
     counts: dict[str, int] = dict(rows)

@@ -25,23 +25,28 @@ def _plain_number(text: str) -> float | None:
     return number
 
 
-def _typed(read: Callable[[str], float]) -> BeforeValidator:
+def _typed(read: Callable[[str], float], example: str) -> BeforeValidator:
     def convert(value: Any) -> Any:
         if not isinstance(value, str):
             return value
-        number = _plain_number(value.strip())
-        return read(value) if number is None else number
+        text = value.strip()
+        number = _plain_number(text)
+        if number is not None:
+            return number
+        if not any(character.isdigit() for character in text):
+            raise ValueError(f"“{text[:60]}” holds no number; write it as {example}.")
+        return read(text)
 
     return BeforeValidator(convert)
 
 
 def _percent(text: str) -> float:
-    number = _plain_number(text.strip().removesuffix("%").strip())
+    number = _plain_number(text.removesuffix("%").strip())
     if number is None:
-        raise ValueError(f"“{text.strip()[:60]}” is not a percentage; write it as 40 %.")
+        raise ValueError(f"“{text[:60]}” is not a percentage; write it as 40 %.")
     return number
 
 
-TemperatureC = Annotated[float, _typed(quantities.temperature_c)]
-DurationMin = Annotated[float, _typed(quantities.duration_min)]
-Percent = Annotated[float, _typed(_percent)]
+TemperatureC = Annotated[float, _typed(quantities.temperature_c, "110 °C")]
+DurationMin = Annotated[float, _typed(quantities.duration_min, "2 h")]
+Percent = Annotated[float, _typed(_percent, "40 %")]

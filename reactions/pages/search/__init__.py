@@ -1,0 +1,1 @@
+"""The reaction list, which is the search."""

@@ -1,0 +1,1 @@
+"""Structures drawn or typed, shown back; and the pictures of stored addends."""
