@@ -8,4 +8,6 @@ urlpatterns: list[URLPattern | URLResolver] = [
     path("", include("reactions.pages.accounts.urls")),
     path("", include("reactions.pages.campaigns.urls")),
     path("", include("reactions.pages.sheet.urls")),
+    path("", include("reactions.pages.search.urls")),
+    path("", include("reactions.pages.structure.urls")),
 ]
