@@ -10,7 +10,7 @@ from collections.abc import Callable
 from functools import wraps
 from typing import Any
 
-from django.conf import settings
+from django.conf import global_settings, settings
 from django.contrib.auth.decorators import login_not_required
 from django.contrib.auth.models import AbstractBaseUser
 from django.contrib.auth.views import redirect_to_login
@@ -62,8 +62,8 @@ def member_page(view: View) -> View:
 
 def log_in_address() -> str:
     """Return the address of the log-in page."""
-    chosen = settings.LOGIN_URL if settings.is_overridden("LOGIN_URL") else "reactions:login"
-    return resolve_url(chosen)
+    is_set = settings.LOGIN_URL != global_settings.LOGIN_URL
+    return resolve_url(settings.LOGIN_URL if is_set else "reactions:login")
 
 
 def campaign_of(user: AbstractBaseUser, code: str) -> Campaign:

@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+from decimal import Decimal
+
 
 def format_equivalents(equivalents: float) -> str:
     """Show equivalents to four figures, as they are typed: ``1.1 eq``."""
-    return f"{float(f'{equivalents:.4g}'):.12f}".rstrip("0").rstrip(".") + " eq"
+    return f"{Decimal(f'{equivalents:.4g}').normalize():f} eq"
 
 
 def format_molar_mass(molar_mass_g_per_mol: float) -> str:

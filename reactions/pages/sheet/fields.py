@@ -12,7 +12,7 @@ from reactions.chemistry import quantities, quantity_text
 from reactions.pages.quantity_words import format_molar_mass
 
 
-class QuantityField(forms.CharField):
+class QuantityField(forms.Field):
     """A number typed with its unit, kept in one fixed unit and shown back in a sensible one."""
 
     def __init__(
@@ -24,15 +24,14 @@ class QuantityField(forms.CharField):
         **kwargs: Any,
     ) -> None:
         kwargs.setdefault("required", False)
-        super().__init__(max_length=60, **kwargs)
+        super().__init__(**kwargs)
         self.read = read
         self.show = show
-        self.widget.attrs.setdefault("placeholder", example)
-        self.widget.attrs.setdefault("autocomplete", "off")
+        self.widget.attrs |= {"placeholder": example, "autocomplete": "off", "maxlength": "100"}
 
     def to_python(self, value: Any) -> Any:
         """Return the number that was typed; raises ``ValidationError`` in the typist's words."""
-        text = super().to_python(value)
+        text = str(value or "").strip()
         if not text:
             return None
         try:

@@ -91,6 +91,18 @@ class LineForm(SheetForm):
         return details_of(self.worked_out) if self.worked_out else ""
 
     @property
+    def is_charged_by_amount(self) -> bool:
+        """Return whether an amount was typed whose equivalents are worth saying."""
+        charge = getattr(self, "cleaned_data", {}).get("charge")
+        return not self.is_cage and isinstance(charge, Charge) and charge.is_amount
+
+    def said_while_typing(self) -> list[tuple[forms.BoundField, list[str]]]:
+        """Return every field with its errors, without those that only ask for what is missing."""
+        return [
+            (field, list(field.errors) if field.value() else []) for field in self.visible_fields()
+        ]
+
+    @property
     def has_errors_within(self) -> bool:
         """Return whether an error stands at a field that is folded away."""
         return self.is_bound and any(name in self.errors for name in _WITHIN)

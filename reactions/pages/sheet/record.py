@@ -7,10 +7,12 @@ from functools import cached_property
 from typing import Any
 
 from django.contrib.auth.models import AbstractBaseUser
+from django.utils.safestring import SafeString
 
 from reactions.chemistry.cautions import CautionSheet
 from reactions.chemistry.families import Family, UnknownFamilyError
 from reactions.chemistry.mass_balance import MassBalance
+from reactions.chemistry.structures import StructureError
 from reactions.models import (
     Component,
     ComponentRole,
@@ -27,8 +29,11 @@ from reactions.pages.drawing.levels import level_name
 from reactions.pages.sheet.cautions import cautions_of
 from reactions.pages.sheet.changes import DescribedRevision, described
 from reactions.pages.sheet.plan_words import model_in_words, objective_in_words
+from reactions.pages.structure.showing import drawn
 from reactions.services.found import balance_of, composition_of
 from reactions.services.states import digest_of
+
+_DRAWING_WIDTH, _DRAWING_HEIGHT = 220, 130
 
 
 @dataclass(frozen=True)
@@ -107,6 +112,17 @@ class Record:
             return known_family(self.reaction.family_key)
         except UnknownFamilyError:
             return None
+
+    @cached_property
+    def addend_drawing(self) -> SafeString:
+        """Return the drawing of the addend; empty where there is none or it can't be drawn."""
+        addend = self.reaction.addend
+        if addend is None:
+            return SafeString("")
+        try:
+            return drawn(addend.smiles, _DRAWING_WIDTH, _DRAWING_HEIGHT, f"addend: {addend}")
+        except StructureError:
+            return SafeString("")
 
     @cached_property
     def components(self) -> list[Component]:

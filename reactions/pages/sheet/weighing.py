@@ -25,8 +25,8 @@ _PREFIX = "lines"
 class WeighingForm:
     """The lines of a weighing list, posted together.
 
-    ``limiting`` is the reagent that runs out first; ``warnings`` come with the amounts worked out;
-    ``troubles`` say why some could not be.
+    ``limiting`` is what runs out first and ``warnings`` come with the amounts, once worked out;
+    ``problems`` concern the list as a whole.
     """
 
     cage: str
@@ -35,7 +35,6 @@ class WeighingForm:
     problems: list[str] = field(default_factory=list)
     limiting: str | None = None
     warnings: list[str] = field(default_factory=list)
-    troubles: list[str] = field(default_factory=list)
 
     def is_valid(self) -> bool:
         """Return whether every line can be understood."""
@@ -44,43 +43,44 @@ class WeighingForm:
 
     def place_errors(self, error: FieldErrors) -> None:
         """Put what a service objected to at the line it is about."""
-        for path, messages in error.messages.items():
-            parts = path.removeprefix("lines.").split(".")
-            if parts[0].isdigit() and int(parts[0]) < len(self.lines):
-                name = ".".join(parts[1:]) or WHOLE
-                self.lines[int(parts[0])].place_errors(FieldErrors({name: messages}))
-            else:
-                self.problems += messages
+        self._place(error, self.lines)
 
     def inputs(self) -> list[LineInput]:
         """Return the lines as the service takes them; raises ``FieldErrors``."""
         return inputs_of(self.cage, self.lines)
 
     def work_out(self) -> None:
-        """Work out every amount that follows from the lines that can be understood."""
-        usable = [line for line in self.lines if line.is_bound and line.is_valid()]
+        """Work out every amount that follows, leaving out the lines that can't be understood."""
         for line in self.lines:
             line.worked_out = None
-        self.troubles = [
-            f"{line.title or 'A line'}: {message}"
-            for line in self.lines
-            if line not in usable and line.is_bound and line.title
-            for messages in line.errors.values()
-            for message in messages
-        ]
-        try:
-            result = work_out_lines(self.cage, inputs_of(self.cage, usable))
-        except FieldErrors as error:
-            self.troubles += [
-                f"{_title_at(usable, path)}{message}"
-                for path, messages in error.messages.items()
-                for message in messages
-            ]
+        usable = [line for line in self.lines if line.is_bound and line.is_valid()]
+        while usable:
+            try:
+                result = work_out_lines(self.cage, inputs_of(self.cage, usable))
+            except FieldErrors as error:
+                at_fault = self._place(error, usable)
+                if not at_fault:
+                    return
+                usable = [line for line in usable if line not in at_fault]
+                continue
+            for line, component in zip(usable, result.components, strict=True):
+                line.worked_out = component
+            self.limiting = result.limiting
+            self.warnings = result.warnings
             return
-        for line, component in zip(usable, result.components, strict=True):
-            line.worked_out = component
-        self.limiting = result.limiting
-        self.warnings = result.warnings
+
+    def _place(self, error: FieldErrors, lines: list[LineForm]) -> list[LineForm]:
+        """Put each message at its line, or at the head of the list; return the lines at fault."""
+        at_fault = []
+        for path, messages in error.messages.items():
+            parts = path.removeprefix("lines.").split(".")
+            if parts[0].isdigit() and int(parts[0]) < len(lines):
+                line = lines[int(parts[0])]
+                line.place_errors(FieldErrors({".".join(parts[1:]) or WHOLE: messages}))
+                at_fault.append(line)
+            else:
+                self.problems += messages
+        return at_fault
 
 
 def inputs_of(cage: str, lines: list[LineForm]) -> list[LineInput]:
@@ -166,11 +166,6 @@ def _line(place: int, line: LineForm, plan: Charge | None, actual: Charge | None
             {f"lines.{place}.{name}": texts for name, texts in error.messages.items()}
         ) from error
     return typed
-
-
-def _title_at(lines: list[LineForm], path: str) -> str:
-    place = path.removeprefix("lines.").split(".")[0]
-    return f"{lines[int(place)].title}: " if place.isdigit() and int(place) < len(lines) else ""
 
 
 def lines_form(record: Record, data: QueryDict | None) -> WeighingForm:
