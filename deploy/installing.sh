@@ -5,6 +5,9 @@
 # What Python's wheels expect of a bare Debian: RDKit draws with the two X libraries.
 site_packages="ca-certificates python3 python3-venv libexpat1 libxext6 libxrender1"
 
+# Wheels come without compiled modules; the first start compiles what it uses, for all later ones.
+unset PYTHONDONTWRITEBYTECODE
+
 say() { echo "$*" >&2; }
 
 as_root() {
