@@ -10,4 +10,5 @@ urlpatterns: list[URLPattern | URLResolver] = [
     path("", include("reactions.pages.sheet.urls")),
     path("", include("reactions.pages.search.urls")),
     path("", include("reactions.pages.structure.urls")),
+    path("", include("reactions.pages.history.urls")),
 ]

@@ -12,7 +12,7 @@ from reactions.models import Addend
 
 
 def read_bounded(text: str) -> SearchableAddend:
-    """Return an addend with its fingerprint, read in a bounded process; raises ``StructureError``."""
+    """Return an addend read in a bounded process; raises ``StructureError``."""
     return run_bounded(read_searchable_addend, text)
 
 

@@ -6,6 +6,7 @@ a real book couldn't. Compositions come from the parameters stated in the table 
 
 from __future__ import annotations
 
+import math
 import random
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
@@ -245,8 +246,8 @@ def _read_out(edit: Edit, reaction: Reaction, run: _Run, draw: random.Random) ->
         run.true_efficiency,
     )
     noisy = [max(0.0, share * draw.gauss(1.0, 0.04)) for share in shares]
-    found = [round(share / sum(noisy), 3) for share in noisy]
-    found[0] = max(0.0, round(1.0 - sum(found[1:]), 3))
+    # Rounded down, so that a reading never exceeds its whole.
+    found = [math.floor(1000 * share / sum(noisy)) / 1000 for share in noisy]
     last = max(level for level, share in enumerate(found) if share >= 0.001)
     add_reading(
         edit,

@@ -18,6 +18,14 @@ from reactions.models import Reaction, Revision, Role, Section, State
 from reactions.services.errors import EditConflict, NotAllowed, RecordClosed
 from reactions.services.found import refresh_found
 
+# The sections that composition, conversion and yields are computed from.
+_FOUND_FOLLOWS_FROM = {
+    Section.LINES,
+    Section.READINGS,
+    Section.ISOLATION,
+    Section.CONCLUSION,
+}
+
 
 @dataclass(frozen=True)
 class Edit:
@@ -44,7 +52,7 @@ class ChangeList:
 
 
 def require_role(user: AbstractBaseUser, campaign: Any, *roles: Role) -> Role:
-    """Return the role of ``user`` in ``campaign``; raises ``NotAllowed`` unless one of ``roles``."""
+    """Return the role of ``user`` in ``campaign``; raises ``NotAllowed`` for any but ``roles``."""
     role = campaign.role_of(user)
     if role is None:
         raise NotAllowed("You are not a member of this campaign; ask one of its authors.")
@@ -76,7 +84,8 @@ def revising(edit: Edit, section: Section, action: str) -> Iterator[tuple[Reacti
         if not changes.rows:
             return
         reaction.version += 1
-        refresh_found(reaction)
+        if section in _FOUND_FOLLOWS_FROM:
+            refresh_found(reaction)
         reaction.save()
         Revision.objects.create(
             reaction=reaction,

@@ -41,7 +41,12 @@ FIELDS: tuple[HistoryField, ...] = (
     HistoryField("family", "addition family", "text", is_required=True, header_words=("family",)),
     HistoryField("cage", "cage", "text", header_words=("cage", "fullerene")),
     HistoryField(
-        "cage_mass", "mass of cage", "mass", _MASS, True, ("cage mass", "c60", "fullerene mass")
+        "cage_mass",
+        "mass of cage",
+        "mass",
+        _MASS,
+        True,
+        ("cage mass", "c60 mass", "c70 mass", "fullerene mass", "c60", "c70"),
     ),
     HistoryField("cage_purity", "purity of cage", "share", _SHARE, header_words=("cage purity",)),
     HistoryField("addend", "addend, drawn as SMILES with *", "structure", header_words=("addend",)),

@@ -46,7 +46,10 @@ class ImportCancelled(Exception):
 def upload_history(
     user: AbstractBaseUser, campaign: Campaign, file_name: str, content: bytes
 ) -> HistoryImport:
-    """Store an uploaded file with the mapping its header suggests; raises ``FieldErrors`` at ``file``."""
+    """Store an uploaded file with the mapping its header suggests.
+
+    Raises ``FieldErrors`` at ``file``.
+    """
     require_role(user, campaign, Role.AUTHOR)
     if len(content) > LARGEST_FILE_BYTES:
         raise FieldErrors.at(
