@@ -6,6 +6,8 @@ someone may save again shows ``EXACT`` figures, so that saving never rounds what
 
 from __future__ import annotations
 
+from decimal import Decimal
+
 SHOWN = 4
 EXACT = 12
 
@@ -73,6 +75,5 @@ def _in_unit(
 
 def _figures(value: float, figures: int) -> str:
     """Return ``value`` to so many significant figures, never in powers of ten."""
-    rounded = float(f"{value:.{figures}g}")
-    text = f"{rounded:.15f}".rstrip("0").rstrip(".")
-    return text or "0"
+    digits = format(Decimal(f"{value:.{figures}g}"), "f")
+    return digits.rstrip("0").rstrip(".") if "." in digits else digits
