@@ -10,6 +10,8 @@ from decimal import Decimal
 
 SHOWN = 4
 EXACT = 12
+_HOURS_FROM = 120
+_DAYS_FROM = 3 * 1440
 
 
 def format_mass(mass_mg: float, figures: int = SHOWN) -> str:
@@ -44,12 +46,14 @@ def format_temperature(temperature_c: float, figures: int = SHOWN) -> str:
 
 
 def format_duration(duration_min: float, figures: int = SHOWN) -> str:
-    """Show a time in minutes as min below 2 h, h below 3 d, else d."""
-    if duration_min < 120:
+    """Show a time in minutes as ``90 min`` below 2 h, else in parts such as ``4 h 10 min``."""
+    if duration_min < _HOURS_FROM:
         return f"{_figures(duration_min, figures)} min"
-    if duration_min < 3 * 1440:
-        return f"{_figures(duration_min / 60, figures)} h"
-    return f"{_figures(duration_min / 1440, figures)} d"
+    days, rest = divmod(duration_min, 1440) if duration_min >= _DAYS_FROM else (0.0, duration_min)
+    hours, minutes = divmod(rest, 60)
+    parts = [(days, "d"), (hours, "h"), (minutes, "min")]
+    shown = [(_figures(count, figures), unit) for count, unit in parts]
+    return " ".join(f"{count} {unit}" for count, unit in shown if count != "0")
 
 
 def format_fraction(fraction: float, figures: int = SHOWN) -> str:
