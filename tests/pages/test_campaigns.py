@@ -81,9 +81,7 @@ def test_only_authors_change_members(signed_in, campaign, outsider, role):
     Membership.objects.create(campaign=campaign, user=outsider, role=role)
     client = signed_in(outsider)
     for name in ("set-member", "remove-member"):
-        response = client.post(
-            address(campaign, name), {"username": "outsider", "role": "author"}
-        )
+        response = client.post(address(campaign, name), {"username": "outsider", "role": "author"})
         assert response.status_code == 403
     assert campaign.role_of(outsider) == role
 
@@ -97,9 +95,7 @@ def test_an_unknown_name_is_said_at_its_field(signed_in, author, campaign):
 
 
 def test_the_only_author_stays(signed_in, author, campaign):
-    response = signed_in(author).post(
-        address(campaign, "remove-member"), {"username": "author"}
-    )
+    response = signed_in(author).post(address(campaign, "remove-member"), {"username": "author"})
     assert response.status_code == 422
     assert "only author" in response.context["refusal"]
     assert campaign.role_of(author) == Role.AUTHOR

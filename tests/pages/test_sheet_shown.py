@@ -25,9 +25,7 @@ def test_an_author_sees_every_section_and_its_forms(signed_in, author, planned, 
         assert f'action="{sheet_of(planned, part)}"' in page
 
 
-def test_amounts_stand_with_units_and_planned_beside_actual(
-    signed_in, author, planned, sheet_of
-):
+def test_amounts_stand_with_units_and_planned_beside_actual(signed_in, author, planned, sheet_of):
     page = signed_in(author).get(sheet_of(planned)).content.decode()
     # 500 mg / 720.66 g/mol; derived.
     assert "0.6938 mmol" in page
@@ -37,9 +35,7 @@ def test_amounts_stand_with_units_and_planned_beside_actual(
     assert 'value="4 h"' in page
 
 
-def test_cautions_head_the_sheet_and_unlisted_is_never_silent(
-    signed_in, author, planned, sheet_of
-):
+def test_cautions_head_the_sheet_and_unlisted_is_never_silent(signed_in, author, planned, sheet_of):
     planned.components.filter(role="reagent").update(name="an ester of our own", smiles="")
     page = signed_in(author).get(sheet_of(planned)).content.decode()
     assert page.index("licensed practice come first") < page.index(">Plan</h2>")
@@ -48,9 +44,7 @@ def test_cautions_head_the_sheet_and_unlisted_is_never_silent(
     assert "<b>an ester of our own</b>: not listed here: read its safety data sheet" in page
 
 
-def test_predicted_stands_above_found_with_a_table_of_values(
-    signed_in, author, planned, sheet_of
-):
+def test_predicted_stands_above_found_with_a_table_of_values(signed_in, author, planned, sheet_of):
     add_reading(
         Edit(author, planned.pk),
         ReadingInput(method="hplc", mole_fraction_by_level={0: 0.5, 1: 0.4, 2: 0.1}),
@@ -79,9 +73,7 @@ def test_a_signed_sheet_shows_no_edit_controls_even_to_its_author(
     assert page.count("<form") == 1  # log out
 
 
-def test_who_is_no_member_is_told_there_is_no_such_reaction(
-    signed_in, outsider, planned, sheet_of
-):
+def test_who_is_no_member_is_told_there_is_no_such_reaction(signed_in, outsider, planned, sheet_of):
     client = signed_in(outsider)
     assert client.get(sheet_of(planned)).status_code == 404
     assert client.get(sheet_of(planned, name="print")).status_code == 404
@@ -113,8 +105,10 @@ def test_no_inline_script_or_style_which_the_policy_would_refuse(
         assert "<style" not in page
         assert " style=" not in page
         assert " onclick=" not in page
-        assert page.count("<script") == page.count("<script ") == page.count(" src=") - page.count(
-            "<img src="
+        assert (
+            page.count("<script")
+            == page.count("<script ")
+            == page.count(" src=") - page.count("<img src=")
         )
 
 

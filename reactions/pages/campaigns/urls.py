@@ -13,7 +13,5 @@ urlpatterns = [
     path("campaigns/", views.campaigns, name="campaigns"),
     path("campaigns/<campaign_code:code>/", views.campaign, name="campaign"),
     path("campaigns/<campaign_code:code>/members/", members.set_role, name="set-member"),
-    path(
-        "campaigns/<campaign_code:code>/members/remove/", members.remove, name="remove-member"
-    ),
+    path("campaigns/<campaign_code:code>/members/remove/", members.remove, name="remove-member"),
 ]

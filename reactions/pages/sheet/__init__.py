@@ -1,1 +1,1 @@
-"""The reaction sheet: plan, run, readout, sign-off, each section a form of its own; and its print."""
+"""The reaction sheet (plan, run, readout, sign-off, each part a form of its own) and its print."""

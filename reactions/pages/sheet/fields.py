@@ -62,9 +62,7 @@ class KeepsStored(forms.Form):
 
 def mass_field(**kwargs: Any) -> QuantityField:
     """Return a field for a mass, in mg."""
-    return QuantityField(
-        quantities.mass_mg, quantity_text.format_mass, example="0.25 g", **kwargs
-    )
+    return QuantityField(quantities.mass_mg, quantity_text.format_mass, example="0.25 g", **kwargs)
 
 
 def volume_field(**kwargs: Any) -> QuantityField:

@@ -140,9 +140,7 @@ class IsolationForm:
 
     def is_valid(self) -> bool:
         """Return whether every step and fraction can be understood."""
-        each = [
-            form.is_valid() for step in self.steps for form in (step, *step.fractions)
-        ]
+        each = [form.is_valid() for step in self.steps for form in (step, *step.fractions)]
         return all(each)
 
     def place_errors(self, error: FieldErrors) -> None:

@@ -6,6 +6,7 @@ from typing import Any
 
 from django import forms
 from django.core.exceptions import ValidationError
+from django.http import QueryDict
 
 from reactions.errors import FieldErrors
 from reactions.models import Component, ComponentRole
@@ -59,10 +60,12 @@ class LineForm(SheetForm):
     )
     batch = forms.CharField(required=False, max_length=80, label="Batch")
 
-    def __init__(self, *args: Any, component: Component | None = None, **kwargs: Any) -> None:
+    def __init__(
+        self, data: QueryDict | None = None, *, prefix: str, component: Component | None = None
+    ) -> None:
         self.component = component
         initial = _initial(component) if component else {"role": ComponentRole.REAGENT}
-        super().__init__(*args, initial=initial, **kwargs)
+        super().__init__(data, prefix=prefix, initial=initial)
         self.worked_out: Component | None = component
         for name in ("name", "charge", "actual", "equivalents_of", "batch", "smiles"):
             self.fields[name].widget.attrs["autocomplete"] = "off"
@@ -73,7 +76,7 @@ class LineForm(SheetForm):
     @property
     def is_cage(self) -> bool:
         """Return whether this is the line of the cage."""
-        return self["role"].value() == ComponentRole.CAGE
+        return bool(self["role"].value() == ComponentRole.CAGE)
 
     @property
     def place(self) -> str:
@@ -99,7 +102,8 @@ class LineForm(SheetForm):
     def said_while_typing(self) -> list[tuple[forms.BoundField, list[str]]]:
         """Return every field with its errors, without those that only ask for what is missing."""
         return [
-            (field, list(field.errors) if field.value() else []) for field in self.visible_fields()
+            (field, [str(error) for error in field.errors] if field.value() else [])
+            for field in self.visible_fields()
         ]
 
     @property
@@ -135,9 +139,7 @@ class LineForm(SheetForm):
 
     def substance(self) -> dict[str, Any]:
         """Return what the line is, as the service takes it, without amounts."""
-        values = {
-            name: self.cleaned_data[name] for name in ("name", "role", *_WITHIN)
-        }
+        values = {name: self.cleaned_data[name] for name in ("name", "role", *_WITHIN)}
         if values["purity"] is None:
             values["purity"] = 1.0
         return values

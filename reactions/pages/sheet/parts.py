@@ -10,7 +10,6 @@ from reactions.pages.sheet.isolation_forms import (
     reshapes_isolation,
     store_isolation,
 )
-from reactions.pages.sheet.weighing import lines_form, reshapes_lines, store_lines
 from reactions.pages.sheet.reading_forms import reading_form, store_reading
 from reactions.pages.sheet.run_forms import (
     conditions_form,
@@ -19,6 +18,7 @@ from reactions.pages.sheet.run_forms import (
     store_observation,
 )
 from reactions.pages.sheet.sections import SectionKind
+from reactions.pages.sheet.weighing import lines_form, reshapes_lines, store_lines
 from reactions.services.revising import Edit
 from reactions.services.run import remove_observation, remove_reading
 

@@ -8,9 +8,9 @@ from django.views.decorators.http import require_POST
 
 from reactions.models import Role
 from reactions.pages.access import member_page, person_of, reaction_of
-from reactions.pages.sheet.weighing import lines_form
 from reactions.pages.sheet.reading_forms import reading_form
 from reactions.pages.sheet.record import Record
+from reactions.pages.sheet.weighing import lines_form
 from reactions.services.revising import require_role
 
 

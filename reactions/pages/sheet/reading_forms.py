@@ -91,19 +91,21 @@ class ReadingForm(SheetForm):
         for level in range(_OWN_FIELD):
             self._take(shares, level, f"level_{level}")
         for place in range(_FURTHER):
-            level = cleaned.get(f"further_level_{place}")
+            further: int | None = cleaned.get(f"further_level_{place}")
             share_name = f"further_share_{place}"
-            if level is None:
+            if further is None:
                 if cleaned.get(share_name):
                     self.add_error(f"further_level_{place}", "Say which level this share is of.")
                 continue
-            if level in shares:
-                self.add_error(f"further_level_{place}", f"Level {level} has its share above.")
+            if further in shares:
+                self.add_error(f"further_level_{place}", f"Level {further} has its share above.")
                 continue
             if not cleaned.get(share_name):
-                self.add_error(share_name, f"Give the share of level {level}, or clear the level.")
+                self.add_error(
+                    share_name, f"Give the share of level {further}, or clear the level."
+                )
                 continue
-            self._take(shares, level, share_name)
+            self._take(shares, further, share_name)
         if not shares and not self.errors:
             self.add_error(None, "Give the share of at least one level.")
         cleaned["mole_fraction_by_level"] = shares

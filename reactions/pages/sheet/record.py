@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Any
 
 from django.contrib.auth.models import AbstractBaseUser
 from django.utils.safestring import SafeString
@@ -214,4 +213,3 @@ class Record:
     def model(self) -> str:
         """Return the model that the prediction rests on, in words."""
         return model_in_words(self.reaction.composition_model)
-

@@ -43,9 +43,7 @@ class ConditionsForm(SheetForm):
     duration_min = duration_field(label="Time")
     atmosphere = forms.ChoiceField(choices=Atmosphere, required=False)
     light = forms.ChoiceField(choices=Light, required=False)
-    addition_mode = forms.ChoiceField(
-        choices=AdditionMode, required=False, label="Reagent goes in"
-    )
+    addition_mode = forms.ChoiceField(choices=AdditionMode, required=False, label="Reagent goes in")
     performed_on = forms.DateField(
         required=False,
         label="Date of the run",

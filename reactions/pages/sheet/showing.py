@@ -1,4 +1,4 @@
-"""Drawing the sheet: the whole page, or after an enhanced save the part and what follows from it."""
+"""Drawing the sheet: the whole page, or after an enhanced save the part and what follows."""
 
 from __future__ import annotations
 

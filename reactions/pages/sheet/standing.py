@@ -54,9 +54,7 @@ def change_state(request: HttpRequest, code: str, number: int) -> HttpResponse:
 def _changed_since(record: Record, edit: Edit) -> str:
     """Return who changed the record since the person read it; one signs what one has seen."""
     since = [
-        row.revision
-        for row in record.revisions
-        if row.revision.number > (edit.seen_version or 0)
+        row.revision for row in record.revisions if row.revision.number > (edit.seen_version or 0)
     ]
     if not since:
         return ""

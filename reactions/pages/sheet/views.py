@@ -78,7 +78,7 @@ def remove_row(request: HttpRequest, code: str, number: int, name: str, pk: int)
 
 
 def _try_to_store(user: AbstractBaseUser, record: Record, shown: ShownSection) -> int:
-    """Store what was typed; return 200, or the status of what stood in the way, said in ``shown``."""
+    """Store what was typed; return 200, or the status of what ``shown`` says stood in the way."""
     if not shown.form.is_valid():
         return 422
     edit = Edit(user, record.reaction.pk, None if shown.kind.only_adds else shown.seen_version)

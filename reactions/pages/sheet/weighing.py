@@ -174,8 +174,7 @@ def lines_form(record: Record, data: QueryDict | None) -> WeighingForm:
     cage = record.reaction.cage
     if data is None:
         lines = [
-            LineForm(component=row, prefix=f"{_PREFIX}-{place}")
-            for place, row in enumerate(stored)
+            LineForm(component=row, prefix=f"{_PREFIX}-{place}") for place, row in enumerate(stored)
         ]
         return WeighingForm(cage, lines, is_bound=False)
     places = places_in(data, _PREFIX)
