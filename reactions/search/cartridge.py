@@ -9,14 +9,24 @@ in process.
 from __future__ import annotations
 
 import logging
+from dataclasses import dataclass
 from typing import Any
 
-from django.db import DatabaseError, OperationalError, connections, transaction
+from django.core.exceptions import EmptyResultSet
+from django.db import (
+    DatabaseError,
+    OperationalError,
+    ProgrammingError,
+    connections,
+    transaction,
+)
 from django.db.backends.base.base import BaseDatabaseWrapper
-from psycopg.errors import QueryCanceled
+from django.db.models import QuerySet
+from psycopg.errors import QueryCanceled, UndefinedFunction, UndefinedTable
 
 from reactions.bounded import StructureTimeoutError
 from reactions.chemistry.substructure import QueryOutline
+from reactions.models import Addend
 
 SEARCH_SECONDS = 10
 _log = logging.getLogger(__name__)
@@ -82,11 +92,27 @@ SELECT id FROM reactions_addend
 WHERE NOT EXISTS (SELECT 1 FROM reactions_addend_cartridge WHERE addend_id = reactions_addend.id)
 """
 
-_IS_READ = "SELECT qmol_from_smarts(%s::cstring) IS NOT NULL"
-
-_MATCHING = """
-SELECT addend_id FROM reactions_addend_cartridge WHERE mol @> qmol_from_smarts(%s::cstring)
+# One round trip: the time limit, then what is found, what isn't loaded, and whether the query is
+# read at all. Django sends parameters within the text, so that two statements can go together.
+_SEARCH = """
+SELECT set_config('statement_timeout', %s, true);
+SELECT addend_id, 'found' FROM reactions_addend_cartridge
+WHERE mol @> qmol_from_smarts(%s::cstring) {among_addend_id}
+UNION ALL
+SELECT id, 'not loaded' FROM reactions_addend
+WHERE NOT EXISTS (SELECT 1 FROM reactions_addend_cartridge WHERE addend_id = reactions_addend.id)
+    {among_id}
+UNION ALL
+SELECT 0, 'query not read' WHERE qmol_from_smarts(%s::cstring) IS NULL
 """
+
+
+@dataclass(frozen=True)
+class Answer:
+    """Keys of the addends ``found``, and of those ``not_loaded``, which weren't searched."""
+
+    found: frozenset[int]
+    not_loaded: frozenset[int]
 
 
 def is_installed(connection: BaseDatabaseWrapper) -> bool:
@@ -133,27 +159,53 @@ def not_loaded(connection: BaseDatabaseWrapper) -> set[int]:
         return {key for (key,) in cursor.fetchall()}
 
 
-def matching(outline: QueryOutline, connection: BaseDatabaseWrapper) -> set[int] | None:
-    """Return the keys of the addends that the cartridge finds to contain the query.
+def search(outline: QueryOutline, among: QuerySet[Addend] | None = None) -> Answer | None:
+    """Return which addends (of those ``among``) the cartridge finds to contain the query.
 
-    None when the cartridge's RDKit can't read the query. Raises ``StructureTimeoutError``.
+    None when there is no cartridge or its RDKit can't read the query. Raises
+    ``StructureTimeoutError``.
     """
+    connection = connections[Addend.objects.db if among is None else among.db]
+    if connection.vendor != "postgresql":
+        return None
     try:
-        with transaction.atomic(connection.alias), connection.cursor() as cursor:
-            cursor.execute("SELECT current_setting('statement_timeout')")
-            (usual,) = cursor.fetchone()
-            cursor.execute(f"SET LOCAL statement_timeout = '{SEARCH_SECONDS}s'")
-            cursor.execute(_IS_READ, [outline.smarts])
-            (is_read,) = cursor.fetchone()
-            found: set[int] | None = None
-            if is_read:
-                cursor.execute(_MATCHING, [outline.smarts])
-                found = {key for (key,) in cursor.fetchall()}
-            cursor.execute("SELECT set_config('statement_timeout', %s, true)", [usual])
+        rows = _rows(outline, among, connection)
+    except EmptyResultSet:
+        return Answer(frozenset(), frozenset())
+    except ProgrammingError as error:
+        if isinstance(error.__cause__, UndefinedTable | UndefinedFunction):
+            return None
+        raise
     except OperationalError as error:
         if isinstance(error.__cause__, QueryCanceled):
             raise StructureTimeoutError(
                 f"The search took longer than {SEARCH_SECONDS} s; look for a larger part."
             ) from error
         raise
-    return found
+    if any(state == "query not read" for _, state in rows):
+        return None
+    return Answer(
+        found=frozenset(key for key, state in rows if state == "found"),
+        not_loaded=frozenset(key for key, state in rows if state == "not loaded"),
+    )
+
+
+def _rows(
+    outline: QueryOutline, among: QuerySet[Addend] | None, connection: BaseDatabaseWrapper
+) -> list[tuple[int, str]]:
+    chosen, values = "", ()
+    if among is not None:
+        chosen, values = among.order_by().values("pk").query.sql_with_params()
+    statement = _SEARCH.format(
+        among_addend_id=chosen and f"AND addend_id IN ({chosen})",
+        among_id=chosen and f"AND id IN ({chosen})",
+    )
+    limit = str(1000 * SEARCH_SECONDS)
+    asked = [limit, outline.smarts, *values, *values, outline.smarts]
+    with transaction.atomic(connection.alias), connection.cursor() as cursor:
+        cursor.execute(statement, asked)
+        cursor.nextset()
+        rows = list(cursor.fetchall())
+        # Nothing was written: rolling back gives the connection its own time limit again.
+        transaction.set_rollback(True, using=connection.alias)
+    return rows

@@ -6,7 +6,6 @@ about the cage, addends that its older RDKit couldn't load) is decided in proces
 
 from __future__ import annotations
 
-from django.db import connections
 from django.db.models import QuerySet
 
 from reactions.bounded import run_bounded
@@ -26,18 +25,13 @@ def addends_containing(
     """
     outline = run_bounded(outline_query, query, kind)
     database = Addend.objects.db if among is None else among.db
-    allowed = None if among is None else set(among.values_list("pk", flat=True))
-    connection = connections[database]
-    found = None
-    if outline.is_for_database and cartridge.is_installed(connection):
-        found = cartridge.matching(outline, connection)
-    if found is None:
+    answer = cartridge.search(outline, among) if outline.is_for_database else None
+    if answer is None:
+        allowed = None if among is None else set(among.values_list("pk", flat=True))
         return in_process.matching(query, kind, outline, database, allowed)
-    unsure = cartridge.not_loaded(connection)
+    found, unsure = set(answer.found), set(answer.not_loaded)
     if outline.may_match_cage:
-        unsure, found = unsure | found, set()
-    if allowed is not None:
-        unsure, found = unsure & allowed, found & allowed
+        found, unsure = set(), unsure | found
     if unsure:
         found |= in_process.matching(query, kind, outline, database, unsure)
     return found

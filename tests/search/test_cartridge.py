@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import logging
+from dataclasses import replace
 
 import pytest
 from django.db import connection
@@ -79,8 +80,26 @@ def test_a_search_in_the_database_that_takes_too_long_is_cut_off(monkeypatch):
     if not ON_POSTGRESQL:
         assert not cartridge.is_installed(connection)
         return
-    monkeypatch.setattr(cartridge, "_MATCHING", "SELECT 1 FROM pg_sleep(60) WHERE %s <> ''")
+    slow = cartridge._SEARCH.replace("mol @>", "pg_sleep(60) IS NULL AND mol @>")
+    monkeypatch.setattr(cartridge, "_SEARCH", slow)
     monkeypatch.setattr(cartridge, "SEARCH_SECONDS", 1)
+    row = stored("*CC#N", "*C(*)(*)CC#N")
     with pytest.raises(StructureTimeoutError, match="longer than 1 s"):
-        cartridge.matching(outline_query("CC#N"), connection)
-    assert Addend.objects.count() == 0  # the transaction is still good
+        cartridge.search(outline_query("CC#N"))
+    assert Addend.objects.get() == row  # the transaction is still good
+
+
+def test_without_the_table_the_search_runs_in_process():
+    row = stored("*CC#N", "*C(*)(*)CC#N")
+    if ON_POSTGRESQL:
+        with connection.cursor() as cursor:
+            cursor.execute("DROP TABLE reactions_addend_cartridge")
+    assert cartridge.search(outline_query("CC#N")) is None
+    assert addends_containing("CC#N") == {row.pk}
+
+
+def test_a_query_that_only_a_newer_cartridge_reads_runs_in_process():
+    row = stored("*CC#N", "*C(*)(*)CC#N")
+    unread = replace(outline_query("CC#N"), smarts="[CX")
+    assert cartridge.search(unread) is None
+    assert addends_containing("CC#N") == {row.pk}

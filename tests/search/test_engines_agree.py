@@ -90,10 +90,11 @@ def test_the_queries_find_many_few_and_none(addends):
 
 def test_postgresql_searches_by_its_cartridge_and_holds_every_addend(addends):
     assert cartridge.is_installed(connection) == (connection.vendor == "postgresql")
+    expected = matched_one_by_one(addends, "C1CNCC1")
     if connection.vendor == "postgresql":
         assert cartridge.not_loaded(connection) == set()
         outline = outline_query("C1CNCC1")
-        assert cartridge.matching(outline, connection) == matched_one_by_one(addends, "C1CNCC1")
+        assert cartridge.search(outline).found == expected
 
 
 def test_smarts_and_smiles_can_be_told_apart(addends):
