@@ -51,10 +51,13 @@ class RunningServer:
             cwd=ROOT, env=self.environment, check=True, capture_output=True, text=True, **options,
         ).stdout  # fmt: skip
 
-    def stop(self):
-        """Ask the processes to end and return the server's exit code."""
+    def ask_to_stop(self):
         for process in self.processes:
             process.send_signal(signal.SIGTERM)
+
+    def stop(self):
+        """Ask the processes to end, wait for them, and return the server's exit code."""
+        self.ask_to_stop()
         for process in self.processes:
             try:
                 process.wait(_STOP_S)
@@ -140,6 +143,8 @@ def start_server(tmp_path_factory):
         return running
 
     yield start
+    for running in started:
+        running.ask_to_stop()
     for running in started:
         running.stop()
         shutil.rmtree(running.data, ignore_errors=True)

@@ -11,9 +11,10 @@ def answer(server, path):
         return response.status, response.read().decode()
 
 
-@pytest.fixture
-def empty_book(start_server, tmp_path):
-    return start_server("--empty", data=tmp_path / "made-on-first-start")
+@pytest.fixture(scope="module")
+def empty_book(start_server, tmp_path_factory):
+    folder = tmp_path_factory.mktemp("book") / "made-on-first-start"
+    return start_server("--empty", data=folder, LABBOOK_BROKER_URL="memory://")
 
 
 def test_the_health_address_answers_without_a_log_in(demo_server):
@@ -25,7 +26,9 @@ def test_the_demo_starts_with_its_three_people(demo_server):
     assert len(set(demo_server.log_ins.values())) == 3
 
 
-def test_passwords_are_printed_once_and_kept_for_the_owner_only(start_server, tmp_path):
+def test_it_ends_in_good_order_and_its_passwords_are_printed_once_and_kept_for_the_owner_only(
+    start_server, tmp_path
+):
     first = start_server("--empty", data=tmp_path)
     assert first.log_ins["owner"] in first.output
     assert stat.S_IMODE((tmp_path / "log-ins").stat().st_mode) == 0o600
@@ -76,11 +79,6 @@ def test_a_port_in_use_is_said_before_anything_is_written(start_server, empty_bo
     assert not (tmp_path / "second").exists()
 
 
-def test_a_second_server_on_the_same_embedded_book_is_refused(start_server, tmp_path):
-    start_server("--empty", data=tmp_path, LABBOOK_BROKER_URL="memory://")
+def test_a_second_server_on_the_same_embedded_book_is_refused(start_server, empty_book):
     with pytest.raises(AssertionError, match="Another server is serving the book"):
-        start_server("--empty", data=tmp_path, LABBOOK_BROKER_URL="memory://")
-
-
-def test_it_ends_in_good_order_when_told_to(start_server):
-    assert start_server("--empty").stop() == 0
+        start_server("--empty", data=empty_book.data, LABBOOK_BROKER_URL="memory://")
