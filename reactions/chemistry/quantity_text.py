@@ -10,23 +10,27 @@ from decimal import Decimal
 
 SHOWN = 4
 EXACT = 12
-_HOURS_FROM = 120
-_DAYS_FROM = 3 * 1440
+_HOURS_FROM_MIN = 120
+_DAYS_FROM_H = 72
+# From what value on a unit is used, its size, its sign; in mg, mL and mmol, largest unit first.
+_MASSES = ((1e6, 1e6, "kg"), (1e3, 1e3, "g"), (0.1, 1.0, "mg"), (0.0, 1e-3, "µg"))
+_VOLUMES = ((1e3, 1e3, "L"), (0.1, 1.0, "mL"), (0.0, 1e-3, "µL"))
+_AMOUNTS = ((1e3, 1e3, "mol"), (0.1, 1.0, "mmol"), (0.0, 1e-3, "µmol"))
 
 
 def format_mass(mass_mg: float, figures: int = SHOWN) -> str:
     """Show a mass in mg as µg below 0.1 mg, g from 1 g, kg from 1 kg, else mg."""
-    return _in_unit(mass_mg, ((1e6, "kg"), (1e3, "g"), (0.1, "mg")), 1e-3, "µg", figures)
+    return _in_unit(mass_mg, _MASSES, figures)
 
 
 def format_volume(volume_ml: float, figures: int = SHOWN) -> str:
     """Show a volume in mL as µL below 0.1 mL, L from 1 L, else mL."""
-    return _in_unit(volume_ml, ((1e3, "L"), (0.1, "mL")), 1e-3, "µL", figures)
+    return _in_unit(volume_ml, _VOLUMES, figures)
 
 
 def format_amount(amount_mmol: float, figures: int = SHOWN) -> str:
     """Show an amount in mmol as µmol below 0.1 mmol, mol from 1 mol, else mmol."""
-    return _in_unit(amount_mmol, ((1e3, "mol"), (0.1, "mmol")), 1e-3, "µmol", figures)
+    return _in_unit(amount_mmol, _AMOUNTS, figures)
 
 
 def format_molarity(molarity_mol_per_l: float, figures: int = SHOWN) -> str:
@@ -46,14 +50,16 @@ def format_temperature(temperature_c: float, figures: int = SHOWN) -> str:
 
 
 def format_duration(duration_min: float, figures: int = SHOWN) -> str:
-    """Show a time in minutes as ``90 min`` below 2 h, else in parts such as ``4 h 10 min``."""
-    if duration_min < _HOURS_FROM:
+    """Show a time in minutes as ``90 min`` below 2 h, else in parts such as ``4 h 10 min``.
+
+    Parts show the time to six figures at least, so that minutes are not lost in days.
+    """
+    if duration_min < _HOURS_FROM_MIN:
         return f"{_figures(duration_min, figures)} min"
-    days, rest = divmod(duration_min, 1440) if duration_min >= _DAYS_FROM else (0.0, duration_min)
-    hours, minutes = divmod(rest, 60)
-    parts = [(days, "d"), (hours, "h"), (minutes, "min")]
-    shown = [(_figures(count, figures), unit) for count, unit in parts]
-    return " ".join(f"{count} {unit}" for count, unit in shown if count != "0")
+    hours, minutes = divmod(Decimal(f"{duration_min:.{max(figures, 6)}g}"), 60)
+    days, hours = divmod(hours, 24) if hours >= _DAYS_FROM_H else (Decimal(0), hours)
+    parts = ((days, "d"), (hours, "h"), (minutes, "min"))
+    return " ".join(f"{_plain(count)} {unit}" for count, unit in parts if count)
 
 
 def format_fraction(fraction: float, figures: int = SHOWN) -> str:
@@ -61,23 +67,19 @@ def format_fraction(fraction: float, figures: int = SHOWN) -> str:
     return f"{_figures(100 * fraction, figures)} %"
 
 
-def _in_unit(
-    value: float,
-    units: tuple[tuple[float, str], ...],
-    small: float,
-    small_unit: str,
-    figures: int,
-) -> str:
-    """Show ``value`` in the first unit whose lower limit it reaches, else in the small one."""
-    for least, unit in units:
-        if value >= least:
-            return f"{_figures(value / (least if least >= 1 else 1.0), figures)} {unit}"
+def _in_unit(value: float, units: tuple[tuple[float, float, str], ...], figures: int) -> str:
+    """Show ``value`` in the first unit that it is large enough for; 0 in the last but one."""
     if value == 0:
-        return f"0 {units[-1][1]}"
-    return f"{_figures(value / small, figures)} {small_unit}"
+        return f"0 {units[-2][2]}"
+    size, unit = next((size, unit) for least, size, unit in units if value >= least)
+    return f"{_figures(value / size, figures)} {unit}"
 
 
 def _figures(value: float, figures: int) -> str:
     """Return ``value`` to so many significant figures, never in powers of ten."""
-    digits = format(Decimal(f"{value:.{figures}g}"), "f")
-    return digits.rstrip("0").rstrip(".") if "." in digits else digits
+    return _plain(Decimal(f"{value:.{figures}g}"))
+
+
+def _plain(value: Decimal) -> str:
+    text = f"{value:f}"
+    return text.rstrip("0").rstrip(".") if "." in text else text
