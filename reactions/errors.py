@@ -26,6 +26,12 @@ _MESSAGES = {
     "int_type": "{value} is not a whole number; write digits, such as 2.",
     "int_from_float": "{value} is not a whole number; leave out the decimals.",
     "bool_parsing": "“{value}” is neither true nor false.",
+    "bool_type": "{value} is neither true nor false.",
+    "list_type": "{value} is not a list.",
+    "dict_type": "{value} is not an object with fields.",
+    "model_type": "{value} is not an object with fields.",
+    "model_attributes_type": "{value} is not an object with fields.",
+    "int_parsing_size": "{value} has too many digits.",
     "string_type": "{value} is not text.",
     "string_too_long": "This is longer than {max_length} characters; shorten it.",
     "string_too_short": "This is empty; write something.",
@@ -61,13 +67,35 @@ class FieldErrors(ValueError):
         return cls({field: [message]})
 
 
-def field_errors(error: ValidationError) -> FieldErrors:
-    """Return pydantic's validation error in the user's words, by field path."""
+def field_errors(error: ValidationError, data: Any = None) -> FieldErrors:
+    """Return pydantic's validation error in the user's words, by field path.
+
+    With ``data``, what was validated, the paths are those of its own fields: pydantic also names
+    the branch of a union it tried, which the person never wrote.
+    """
     messages: dict[str, list[str]] = {}
     for detail in error.errors(include_url=False):
-        path = ".".join(str(part) for part in detail["loc"]) or WHOLE
-        messages.setdefault(path, []).append(_message(dict(detail)))
+        parts = detail["loc"] if data is None else _own_parts(detail["loc"], data)
+        path = ".".join(str(part) for part in parts) or WHOLE
+        message = _message(dict(detail))
+        if message not in messages.setdefault(path, []):
+            messages[path].append(message)
     return FieldErrors(messages)
+
+
+def _own_parts(parts: tuple[int | str, ...], data: Any) -> list[int | str]:
+    """Return the parts of a path that lead through ``data``, and a last one that it lacks."""
+    own: list[int | str] = []
+    node = data
+    for place, part in enumerate(parts):
+        if isinstance(node, Mapping) and part in node:
+            node = node[part]
+        elif isinstance(node, list) and isinstance(part, int) and part < len(node):
+            node = node[part]
+        elif not (isinstance(node, Mapping) and place == len(parts) - 1):
+            continue
+        own.append(part)
+    return own
 
 
 def _message(detail: dict[str, Any]) -> str:
