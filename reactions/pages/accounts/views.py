@@ -2,12 +2,17 @@
 
 from __future__ import annotations
 
+from math import comb
 from typing import Any
 
 from django.contrib.auth import views
 from django.urls import reverse
 
 from reactions.pages.accounts.forms import LogInForm
+
+# The picture on the log-in page: a run with more and more reagent, from hardly any to hexakis.
+_SITES = 30
+_UPTAKES = (0.15, 0.5, 1.0, 1.6, 2.3, 3.1, 4.0, 5.0)
 
 
 class LogIn(views.LoginView):
@@ -17,9 +22,24 @@ class LogIn(views.LoginView):
     form_class = LogInForm
     redirect_authenticated_user = True
 
+    def get_context_data(self, **kwargs: Any) -> dict[str, Any]:
+        """Add the compositions of the picture."""
+        return super().get_context_data(
+            compositions=[_by_chance(uptake) for uptake in _UPTAKES], **kwargs
+        )
+
     def get_default_redirect_url(self) -> str:
         """Return where to go when no page was asked for."""
         return reverse("reactions:search")
+
+
+def _by_chance(uptake: float) -> list[float]:
+    """Return the binomial composition at a mean number of additions over independent sites."""
+    share = uptake / _SITES
+    return [
+        comb(_SITES, level) * share**level * (1 - share) ** (_SITES - level)
+        for level in range(_SITES + 1)
+    ]
 
 
 class LogOut(views.LogoutView):

@@ -8,15 +8,19 @@ from typing import Any
 
 from reactions.chemistry import quantity_text
 from reactions.models import Revision
+from reactions.pages.quantity_words import format_molar_mass
 
+# By the unit at the end of a field's name, the longer ends first.
 _SHOWN_BY_UNIT: Mapping[str, Callable[[float], str]] = {
+    "_g_per_ml": quantity_text.format_density,
+    "_mol_per_l": quantity_text.format_molarity,
+    "_g_per_mol": format_molar_mass,
     "_mg": quantity_text.format_mass,
     "_ml": quantity_text.format_volume,
     "_mmol": quantity_text.format_amount,
     "_min": quantity_text.format_duration,
     "_c": quantity_text.format_temperature,
 }
-_UNIT_SUFFIXES = (*_SHOWN_BY_UNIT, "_g_per_mol", "_g_per_ml", "_mol_per_l")
 _NOTHING = "–"
 
 
@@ -28,6 +32,11 @@ class DescribedChange:
     before: str
     after: str
     made_by: str
+
+    @property
+    def is_addition(self) -> bool:
+        """Return whether nothing stood there before."""
+        return self.before == _NOTHING
 
 
 @dataclass(frozen=True)
@@ -51,34 +60,49 @@ def describe_change(change: Mapping[str, Any]) -> DescribedChange:
     field = str(change.get("field", ""))
     return DescribedChange(
         name=_name(field),
-        before=_value(field, change.get("before")),
-        after=_value(field, change.get("after")),
+        before=_side(field, change.get("before")),
+        after=_side(field, change.get("after")),
         made_by=str(change.get("made_by", "")),
     )
 
 
+def _side(field: str, value: Any) -> str:
+    """Return one side of a change; what has many fields gets a line for each."""
+    return _pairs(value, "\n") if isinstance(value, Mapping) else _value(field, value)
+
+
 def _name(field: str) -> str:
-    for suffix in _UNIT_SUFFIXES:
-        field = field.removesuffix(suffix)
+    for suffix in _SHOWN_BY_UNIT:
+        if field.endswith(suffix):
+            return field.removesuffix(suffix).replace("_", " ")
     return field.replace("_", " ")
 
 
 def _value(field: str, value: Any) -> str:
-    if value is None or value in ("", [], {}):
+    if _is_nothing(value):
         return _NOTHING
-    if isinstance(value, bool):
-        return "yes" if value else "no"
+    if value is True:
+        return "yes"
     if isinstance(value, int | float):
         for suffix, show in _SHOWN_BY_UNIT.items():
             if field.endswith(suffix):
                 return show(float(value))
         return f"{value:g}"
     if isinstance(value, list):
-        return "\n".join(_value("", row) for row in value)
+        are_short = all(isinstance(row, int | float) for row in value)
+        return (", " if are_short else "\n").join(_value("", row) for row in value)
     if isinstance(value, Mapping):
-        return "\n".join(
-            f"{_name(str(key))}: {_value(str(key), row)}"
-            for key, row in value.items()
-            if row not in (None, "", [], {})
-        )
+        return _pairs(value, ", ")
     return str(value)
+
+
+def _pairs(values: Mapping[str, Any], between: str) -> str:
+    return between.join(
+        f"{_name(str(name))} {_value(str(name), value)}"
+        for name, value in values.items()
+        if not _is_nothing(value)
+    )
+
+
+def _is_nothing(value: Any) -> bool:
+    return value is None or value is False or value in ("", [], {})

@@ -79,6 +79,11 @@ class LineForm(SheetForm):
         return bool(self["role"].value() == ComponentRole.CAGE)
 
     @property
+    def is_usable(self) -> bool:
+        """Return whether amounts can be worked out, if only the planned or the actual ones."""
+        return self.is_bound and set(self.errors) <= {"charge", "actual"}
+
+    @property
     def place(self) -> str:
         """Return the place of the line in the names of its fields."""
         return str(self.prefix).rsplit("-", 1)[-1]

@@ -26,7 +26,6 @@ def _writable(request: HttpRequest, code: str, number: int) -> Record:
 def preview_lines(request: HttpRequest, code: str, number: int) -> HttpResponse:
     """Return the amounts that follow from the weighing list as typed."""
     form = lines_form(_writable(request, code, number), request.POST)
-    form.work_out()
     return render(request, "reactions/sheet/lines_preview.html", {"form": form})
 
 

@@ -8,14 +8,14 @@ from typing import Any
 from django.http import QueryDict
 
 from reactions.errors import WHOLE, FieldErrors
-from reactions.models import Component, ComponentRole
+from reactions.models import Component, ComponentRole, Reaction
 from reactions.pages.sheet.charges import Charge
 from reactions.pages.sheet.line_forms import LineForm
 from reactions.pages.sheet.record import Record
 from reactions.pages.sheet.rows import next_place, places_in
 from reactions.pages.sheet.run_forms import checked
 from reactions.services.inputs import LineInput
-from reactions.services.lines import amend_lines, work_out_lines
+from reactions.services.lines import amend_lines, lines_of, work_out_lines
 from reactions.services.revising import Edit
 
 _PREFIX = "lines"
@@ -39,7 +39,7 @@ class WeighingForm:
     def is_valid(self) -> bool:
         """Return whether every line can be understood."""
         each = [line.is_valid() for line in self.lines]
-        return all(each)
+        return all(each) and not self.problems
 
     def place_errors(self, error: FieldErrors) -> None:
         """Put what a service objected to at the line it is about."""
@@ -53,7 +53,7 @@ class WeighingForm:
         """Work out every amount that follows, leaving out the lines that can't be understood."""
         for line in self.lines:
             line.worked_out = None
-        usable = [line for line in self.lines if line.is_bound and line.is_valid()]
+        usable = [line for line in self.lines if line.is_usable]
         while usable:
             try:
                 result = work_out_lines(self.cage, inputs_of(self.cage, usable))
@@ -68,6 +68,16 @@ class WeighingForm:
             self.limiting = result.limiting
             self.warnings = result.warnings
             return
+
+    def take_stored(self, reaction: Reaction) -> None:
+        """Say of the stored lines what runs out first and what to heed."""
+        try:
+            result = work_out_lines(self.cage, lines_of(reaction))
+        except FieldErrors as error:
+            self.problems += [str(error)]
+            return
+        self.limiting = result.limiting
+        self.warnings = result.warnings
 
     def _place(self, error: FieldErrors, lines: list[LineForm]) -> list[LineForm]:
         """Put each message at its line, or at the head of the list; return the lines at fault."""
@@ -176,7 +186,9 @@ def lines_form(record: Record, data: QueryDict | None) -> WeighingForm:
         lines = [
             LineForm(component=row, prefix=f"{_PREFIX}-{place}") for place, row in enumerate(stored)
         ]
-        return WeighingForm(cage, lines, is_bound=False)
+        form = WeighingForm(cage, lines, is_bound=False)
+        form.take_stored(record.reaction)
+        return form
     places = places_in(data, _PREFIX)
     lines = [
         LineForm(
@@ -190,8 +202,7 @@ def lines_form(record: Record, data: QueryDict | None) -> WeighingForm:
     if "add_line" in data:
         lines.append(LineForm(prefix=f"{_PREFIX}-{next_place(places)}"))
     form = WeighingForm(cage, lines, is_bound=True)
-    if reshapes_lines(data):
-        form.work_out()
+    form.work_out()
     return form
 
 
