@@ -88,9 +88,10 @@ def _own_parts(parts: tuple[int | str, ...], data: Any) -> list[int | str]:
     own: list[int | str] = []
     node = data
     for place, part in enumerate(parts):
-        if isinstance(node, Mapping) and part in node:
-            node = node[part]
-        elif isinstance(node, list) and isinstance(part, int) and part < len(node):
+        leads_on = (isinstance(node, Mapping) and part in node) or (
+            isinstance(node, list) and isinstance(part, int) and part < len(node)
+        )
+        if leads_on:
             node = node[part]
         elif not (isinstance(node, Mapping) and place == len(parts) - 1):
             continue

@@ -2,6 +2,60 @@
 
 from __future__ import annotations
 
-from django.urls import URLPattern, URLResolver
+from django.urls import path
 
-urlpatterns: list[URLPattern | URLResolver] = []
+from reactions.api import access, catalogue, computing, records
+from reactions.api.base import token_is_installed
+from reactions.calculators import CALCULATORS
+
+_RECORD = "reactions/<str:label>/"
+_PARTS = {
+    "lines": records.Lines,
+    "conditions": records.Conditions,
+    "isolation": records.Isolation,
+    "conclusion": records.Conclusion,
+    "observations": records.Observations,
+    "readings": records.Readings,
+    "state": records.StateOfReaction,
+    "signature": records.AuthorSignature,
+    "countersignature": records.Countersignature,
+}
+
+urlpatterns = [
+    path("", access.Documentation.as_view(), name="api-docs"),
+    path("schema/", access.Schema.as_view(), name="api-schema"),
+    path("campaigns/", catalogue.Campaigns.as_view(), name="api-campaigns"),
+    path("campaigns/<str:code>/", catalogue.OneCampaign.as_view(), name="api-campaign"),
+    path(
+        "campaigns/<str:code>/members/<str:username>/",
+        catalogue.Member.as_view(),
+        name="api-member",
+    ),
+    path("families/", catalogue.Families.as_view(), name="api-families"),
+    path("addends/", catalogue.Addends.as_view(), name="api-addends"),
+    path("reactions/", records.Reactions.as_view(), name="api-reactions"),
+    path(_RECORD, records.OneReaction.as_view(), name="api-reaction"),
+    path(
+        f"{_RECORD}observations/<int:pk>/",
+        records.OneObservation.as_view(),
+        name="api-observation",
+    ),
+    path(f"{_RECORD}readings/<int:pk>/", records.OneReading.as_view(), name="api-reading"),
+    *(
+        path(f"{_RECORD}{name}/", view.as_view(), name=f"api-{name}")
+        for name, view in _PARTS.items()
+    ),
+    path("compute/", computing.Calculators.as_view(), name="api-compute-list"),
+    *(
+        path(
+            f"compute/{row.name}/",
+            computing.view_of(row).as_view(),
+            name=f"api-compute-{row.name}",
+        )
+        for row in CALCULATORS.values()
+    ),
+    path("compute/<str:name>/", computing.NoSuchCalculator.as_view(), name="api-compute"),
+]
+
+if token_is_installed():
+    urlpatterns.append(path("token/", access.ObtainToken.as_view(), name="api-token"))

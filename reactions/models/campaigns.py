@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from django.conf import settings
+from django.contrib.auth.models import User
 from django.core.validators import RegexValidator
 from django.db import models
 
@@ -20,11 +21,11 @@ class Role(models.TextChoices):
 class CampaignQuerySet(models.QuerySet["Campaign"]):
     """Campaigns by who may see them."""
 
-    def visible_to(self, user: object) -> CampaignQuerySet:
+    def visible_to(self, user: User) -> CampaignQuerySet:
         """Return the campaigns of which ``user`` is a member."""
         return self.filter(memberships__user=user)
 
-    def writable_by(self, user: object) -> CampaignQuerySet:
+    def writable_by(self, user: User) -> CampaignQuerySet:
         """Return the campaigns in which ``user`` may plan and record."""
         return self.filter(memberships__user=user, memberships__role=Role.AUTHOR)
 
@@ -57,7 +58,7 @@ class Campaign(models.Model):
     def __str__(self) -> str:
         return self.name
 
-    def role_of(self, user: object) -> Role | None:
+    def role_of(self, user: User) -> Role | None:
         """Return the role of ``user`` in this campaign; None for one who is no member."""
         membership = self.memberships.filter(user=user).first()
         return Role(membership.role) if membership else None

@@ -14,7 +14,7 @@ from reactions.chemistry.families import (
 
 
 class LabFamily(models.Model):
-    """A lab's own addition family; ``definition`` has the fields of ``chemistry.families.Family``."""
+    """A lab's own addition family; ``definition`` has the fields of the chemistry's ``Family``."""
 
     key = models.SlugField(max_length=60, unique=True)
     name = models.CharField(max_length=120)

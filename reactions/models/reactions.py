@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from django.conf import settings
+from django.contrib.auth.models import User
 from django.db import models
 from django.db.models import Q
 
@@ -54,7 +55,7 @@ class AdditionMode(models.TextChoices):
 class ReactionQuerySet(models.QuerySet["Reaction"]):
     """Reactions by who may see them."""
 
-    def visible_to(self, user: object) -> ReactionQuerySet:
+    def visible_to(self, user: User) -> ReactionQuerySet:
         """Return the reactions of the campaigns of which ``user`` is a member."""
         return self.filter(campaign__memberships__user=user)
 

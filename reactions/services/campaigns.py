@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from django.contrib.auth import get_user_model
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.core.exceptions import ValidationError
 from django.db import transaction
 
@@ -14,7 +14,7 @@ from reactions.services.revising import require_role
 
 @transaction.atomic
 def open_campaign(
-    user: AbstractBaseUser, *, code: str, name: str, purpose: str = "", is_invented: bool = False
+    user: User, *, code: str, name: str, purpose: str = "", is_invented: bool = False
 ) -> Campaign:
     """Open a campaign whose first author is ``user``; raises ``FieldErrors``."""
     campaign = Campaign(
@@ -30,7 +30,7 @@ def open_campaign(
 
 
 @transaction.atomic
-def set_member(user: AbstractBaseUser, campaign: Campaign, username: str, role: str) -> Membership:
+def set_member(user: User, campaign: Campaign, username: str, role: str) -> Membership:
     """Give the person called ``username`` a role in ``campaign``; an author may.
 
     Raises ``NotAllowed``, or ``FieldErrors`` for an unknown name or role, or when it would leave
@@ -53,7 +53,7 @@ def set_member(user: AbstractBaseUser, campaign: Campaign, username: str, role: 
 
 
 @transaction.atomic
-def remove_member(user: AbstractBaseUser, campaign: Campaign, username: str) -> None:
+def remove_member(user: User, campaign: Campaign, username: str) -> None:
     """Take a person out of ``campaign``; an author may. Raises as ``set_member`` does."""
     require_role(user, campaign, Role.AUTHOR)
     membership = campaign.memberships.filter(user__username=username).first()
@@ -63,7 +63,7 @@ def remove_member(user: AbstractBaseUser, campaign: Campaign, username: str) -> 
     membership.delete()
 
 
-def _keep_an_author(campaign: Campaign, leaving: AbstractBaseUser, field: str) -> None:
+def _keep_an_author(campaign: Campaign, leaving: User, field: str) -> None:
     """Raise when ``leaving`` is the campaign's only author."""
     authors = campaign.memberships.select_for_update().filter(role=Role.AUTHOR)
     if not [row for row in authors if row.user_id != leaving.pk]:

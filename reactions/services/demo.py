@@ -14,7 +14,7 @@ from datetime import date, timedelta
 from typing import Any
 
 from django.contrib.auth import get_user_model
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.db import transaction
 
 from reactions.chemistry.distribution import DistributionRequest, distribution
@@ -63,7 +63,7 @@ class _Run:
 
 
 @transaction.atomic
-def load_demo() -> list[AbstractBaseUser]:
+def load_demo() -> list[User]:
     """Load the demo into an empty book and return its people, none with a password yet.
 
     Raises ``ValueError`` when the book already holds a campaign.
@@ -83,7 +83,7 @@ def load_demo() -> list[AbstractBaseUser]:
     return list(people.values())
 
 
-def _person(row: Mapping[str, str]) -> AbstractBaseUser:
+def _person(row: Mapping[str, str]) -> User:
     user, _ = get_user_model().objects.get_or_create(
         username=row["username"],
         defaults={"first_name": row["first_name"], "last_name": row["last_name"]},
@@ -93,7 +93,7 @@ def _person(row: Mapping[str, str]) -> AbstractBaseUser:
     return user
 
 
-def _campaign(row: Mapping[str, Any], people: Mapping[str, AbstractBaseUser]) -> Campaign:
+def _campaign(row: Mapping[str, Any], people: Mapping[str, User]) -> Campaign:
     campaign = open_campaign(
         people[Role.AUTHOR],
         code=row["code"],
@@ -132,7 +132,7 @@ def _stage(position: int, count: int) -> str:
 
 def _record(
     campaign: Campaign,
-    people: Mapping[str, AbstractBaseUser],
+    people: Mapping[str, User],
     run: _Run,
     stage: str,
     draw: random.Random,

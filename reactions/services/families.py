@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from typing import Any
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.db import transaction
 
 from reactions.chemistry.families import FamilyError, families, family_from_data
@@ -15,7 +15,7 @@ from reactions.services.errors import NotAllowed
 
 
 @transaction.atomic
-def define_family(user: AbstractBaseUser, definition: Mapping[str, Any]) -> LabFamily:
+def define_family(user: User, definition: Mapping[str, Any]) -> LabFamily:
     """Store a family of the lab's own; an author of any campaign may.
 
     Raises ``FieldErrors`` for what the definition lacks or a key that is taken.

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.db import transaction
 from django.db.models import Max
 
@@ -25,7 +25,7 @@ from reactions.services.revising import require_role
 
 
 @transaction.atomic
-def plan_reaction(user: AbstractBaseUser, campaign: Campaign, plan: PlanInput) -> Reaction:
+def plan_reaction(user: User, campaign: Campaign, plan: PlanInput) -> Reaction:
     """Store a planned reaction with its weighing list worked out, and its first revision.
 
     Raises ``NotAllowed``, ``FieldErrors``, or ``NeedsConfirmation`` for a level above the highest

@@ -11,10 +11,10 @@ from contextlib import contextmanager
 from dataclasses import dataclass, field
 from typing import Any
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.db import transaction
 
-from reactions.models import Reaction, Revision, Role, Section, State
+from reactions.models import Campaign, Reaction, Revision, Role, Section, State
 from reactions.services.errors import EditConflict, NotAllowed, RecordClosed
 from reactions.services.found import refresh_found
 
@@ -34,7 +34,7 @@ class Edit:
     ``seen_version`` None means that the change only adds and can't run over anyone's.
     """
 
-    user: AbstractBaseUser
+    user: User
     reaction_id: int
     seen_version: int | None = None
 
@@ -51,7 +51,7 @@ class ChangeList:
             self.rows.append({"field": name, "before": before, "after": after})
 
 
-def require_role(user: AbstractBaseUser, campaign: Any, *roles: Role) -> Role:
+def require_role(user: User, campaign: Campaign, *roles: Role) -> Role:
     """Return the role of ``user`` in ``campaign``; raises ``NotAllowed`` for any but ``roles``."""
     role = campaign.role_of(user)
     if role is None:

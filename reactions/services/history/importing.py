@@ -10,7 +10,7 @@ import csv
 import io
 from collections.abc import Mapping
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.db import transaction
 from django.utils import timezone
 from pydantic import TypeAdapter, ValidationError
@@ -43,9 +43,7 @@ class ImportCancelled(Exception):
     """The person cancelled the import."""
 
 
-def upload_history(
-    user: AbstractBaseUser, campaign: Campaign, file_name: str, content: bytes
-) -> HistoryImport:
+def upload_history(user: User, campaign: Campaign, file_name: str, content: bytes) -> HistoryImport:
     """Store an uploaded file with the mapping its header suggests.
 
     Raises ``FieldErrors`` at ``file``.
@@ -125,7 +123,7 @@ def sample_of(job: HistoryImport, count: int = 3) -> list[list[str]]:
 
 @transaction.atomic
 def confirm_mapping(
-    user: AbstractBaseUser, job: HistoryImport, mapping: Mapping[str, Mapping[str, str]]
+    user: User, job: HistoryImport, mapping: Mapping[str, Mapping[str, str]]
 ) -> HistoryImport:
     """Take the mapping the person confirmed and queue the import; raises ``FieldErrors``."""
     require_role(user, job.campaign, Role.AUTHOR)
@@ -167,7 +165,7 @@ def _check_mapping(mapping: ColumnMapping, header: list[str]) -> None:
 
 
 @transaction.atomic
-def request_cancel(user: AbstractBaseUser, job: HistoryImport) -> None:
+def request_cancel(user: User, job: HistoryImport) -> None:
     """Ask a running import to stop; it stores nothing then."""
     require_role(user, job.campaign, Role.AUTHOR)
     HistoryImport.objects.filter(

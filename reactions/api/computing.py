@@ -1,0 +1,87 @@
+"""The calculators over the API, made from their list."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from drf_spectacular.utils import extend_schema
+from rest_framework.exceptions import NotFound
+from rest_framework.request import Request
+from rest_framework.response import Response
+
+from reactions.api.base import Endpoint
+from reactions.api.outputs import AnyObject, Refusal
+from reactions.calculators import CALCULATORS, Calculator, UnknownCalculatorError, compute
+from reactions.errors import WHOLE, FieldErrors
+
+MOST_AT_ONCE = 1000
+
+
+class Calculators(Endpoint):
+    """The list of calculators."""
+
+    @extend_schema(operation_id="compute_list", responses={200: AnyObject})
+    def get(self, request: Request) -> Response:
+        """Return each calculator with the JSON schemas of its request and its result."""
+        return Response(
+            {
+                row.name: {
+                    "summary": row.summary,
+                    "request": row.request.model_json_schema(),
+                    "result": row.result.model_json_schema(),
+                }
+                for row in CALCULATORS.values()
+            }
+        )
+
+
+class Compute(Endpoint):
+    """One calculator; each of the list has a view of its own, so that the schema is typed."""
+
+    name = ""
+
+    def answer(self, data: Any) -> Response:
+        """Answer a request, or an array of at most 1,000 of them."""
+        if not isinstance(data, list):
+            return Response(compute(self.name, data))
+        if len(data) > MOST_AT_ONCE:
+            raise FieldErrors.at(
+                WHOLE, f"{len(data)} requests are too many at once; send {MOST_AT_ONCE} or fewer."
+            )
+        return Response([self._nth(place, row) for place, row in enumerate(data)])
+
+    def _nth(self, place: int, row: Any) -> dict[str, Any]:
+        try:
+            return compute(self.name, row)
+        except FieldErrors as error:
+            raise FieldErrors(
+                {
+                    (f"{place}" if path == WHOLE else f"{place}.{path}"): texts
+                    for path, texts in error.messages.items()
+                }
+            ) from error
+
+
+class NoSuchCalculator(Endpoint):
+    """The answer to a name that is none."""
+
+    @extend_schema(exclude=True)
+    def post(self, request: Request, name: str) -> Response:
+        """Say which calculators there are."""
+        raise NotFound(str(UnknownCalculatorError(name)))
+
+
+def view_of(calculator: Calculator) -> type[Compute]:
+    """Return the view of one calculator, typed for the schema."""
+
+    @extend_schema(
+        operation_id=f"compute_{calculator.name}",
+        summary=calculator.summary,
+        request=calculator.request,
+        responses={200: calculator.result, 400: Refusal},
+    )
+    def post(self: Compute, request: Request) -> Response:
+        return self.answer(request.data)
+
+    name = f"Compute{calculator.name.title().replace('_', '')}"
+    return type(name, (Compute,), {"name": calculator.name, "post": post})
