@@ -11,4 +11,5 @@ urlpatterns: list[URLPattern | URLResolver] = [
     path("", include("reactions.pages.search.urls")),
     path("", include("reactions.pages.structure.urls")),
     path("", include("reactions.pages.history.urls")),
+    path("", include("reactions.pages.planner.urls")),
 ]

@@ -24,11 +24,11 @@ def shown(request: HttpRequest) -> HttpResponse:
     """Show back the structure in the field that ``field`` names; 422 for one that can't be read.
 
     ``purpose`` says what it is for: an ``addend`` with its attachment points, or a ``query`` of the
-    kind in ``<field>_kind``.
+    kind in ``<field>_kind``. ``slot`` is the place on the page where an error belongs.
     """
     field = request.POST.get("field", "text")
     text = request.POST.get(field, "")
-    context: dict[str, object] = {}
+    context: dict[str, object] = {"slot": request.POST.get("slot", "")}
     try:
         if not text.strip():
             pass
@@ -39,7 +39,7 @@ def shown(request: HttpRequest) -> HttpResponse:
     except StructureError as error:
         context["error"] = str(error)
     status = 422 if "error" in context else 200
-    return render(request, "reactions/structure/shown.html", context, status=status)
+    return render(request, "reactions/structure/answer.html", context, status=status)
 
 
 @require_safe

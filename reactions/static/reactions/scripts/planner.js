@@ -1,0 +1,41 @@
+// Gives each target a slider beside its field, and fills in a usual addend when it is chosen.
+// Without script the fields and the buttons do the same.
+
+function slide(field) {
+  const [min, max, step] = field.dataset.slide.split(" ");
+  const slider = document.createElement("input");
+  Object.assign(slider, { type: "range", min, max, step });
+  slider.setAttribute("aria-label", `${field.labels[0]?.textContent ?? "Target"}, by slider`);
+  slider.value = field.value;
+  slider.addEventListener("input", () => {
+    field.value = slider.value;
+    field.dispatchEvent(new Event("input", { bubbles: true }));
+  });
+  field.addEventListener("input", () => {
+    if (document.activeElement !== slider) slider.value = field.value;
+  });
+  field.after(slider);
+  field.dataset.slides = "";
+}
+
+function fill(select) {
+  select.addEventListener("change", () => {
+    const addend = document.getElementById("plan_addend");
+    if (!select.value || !addend) return;
+    addend.value = select.value;
+    const name = document.getElementById("plan_addend_name");
+    name.value = select.selectedOptions[0].textContent;
+    addend.dispatchEvent(new Event("input", { bubbles: true }));
+    addend.dispatchEvent(new Event("change", { bubbles: true }));
+  });
+  select.dataset.fills = "";
+}
+
+function mount() {
+  for (const field of document.querySelectorAll("[data-slide]:not([data-slides])")) slide(field);
+  for (const select of document.querySelectorAll("#plan_usual_addend:not([data-fills])")) fill(select);
+  for (const button of document.querySelectorAll("[data-without-script]")) button.hidden = true;
+}
+
+document.body.addEventListener("htmx:afterSettle", mount);
+mount();
