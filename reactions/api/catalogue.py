@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-from dataclasses import asdict
 from typing import Any
 
 from drf_spectacular.utils import extend_schema
@@ -97,11 +96,13 @@ class Member(Endpoint):
         return Response(show_campaign(campaign, self.person).model_dump())
 
 
-def _plain_family(family: Any) -> dict[str, Any]:
-    plain = asdict(family)
-    return {
-        name: dict(value) if hasattr(value, "items") else value for name, value in plain.items()
-    }
+def _plain(value: Any) -> Any:
+    """Return a family, or a part of one, as JSON can hold it."""
+    if is_dataclass(value):
+        return {field.name: _plain(getattr(value, field.name)) for field in fields(value)}
+    if isinstance(value, Mapping):
+        return dict(value)
+    return [_plain(part) for part in value] if isinstance(value, tuple) else value
 
 
 class Families(Endpoint):
@@ -110,7 +111,7 @@ class Families(Endpoint):
     @extend_schema(operation_id="families_list", responses={200: ObjectList})
     def get(self, request: Request) -> Response:
         """Return every family, the table's and the lab's own."""
-        return Response([_plain_family(family) for family in known_families().values()])
+        return Response([_plain(family) for family in known_families().values()])
 
     @extend_schema(
         operation_id="families_define",
@@ -120,7 +121,7 @@ class Families(Endpoint):
     def post(self, request: Request) -> Response:
         """Add a family of the lab's own; an author of any campaign may."""
         family = define_family(self.person, fields_of(request)).family
-        return Response(_plain_family(family), status=201)
+        return Response(_plain(family), status=201)
 
 
 class Addends(Endpoint):

@@ -68,7 +68,7 @@ def work_out_lines(cage: str, lines: Sequence[LineInput]) -> WorkedOutLines:
     Raises ``FieldErrors`` with paths such as ``lines.2.smiles``.
     """
     _check_together(lines)
-    cage_g_per_mol = _cage_mass(cage)
+    cage_g_per_mol = cage_mass(cage)
     masses = [_molar_mass(place, line, cage_g_per_mol) for place, line in enumerate(lines)]
     components = [
         _component(place, line, mass)
@@ -123,7 +123,8 @@ def _check_together(lines: Sequence[LineInput]) -> None:
         raise FieldErrors(errors)
 
 
-def _cage_mass(cage: str) -> float:
+def cage_mass(cage: str) -> float:
+    """Return the molar mass of a cage in g/mol; raises ``FieldErrors`` at ``cage``."""
     try:
         return cage_molar_mass_g_per_mol(cage)
     except StructureError as error:

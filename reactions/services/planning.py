@@ -20,7 +20,7 @@ from reactions.models import (
 from reactions.services.addends import store_addend
 from reactions.services.errors import NeedsConfirmation
 from reactions.services.inputs import PlanInput
-from reactions.services.lines import work_out_lines
+from reactions.services.lines import cage_mass, work_out_lines
 from reactions.services.revising import require_role
 
 
@@ -32,7 +32,9 @@ def plan_reaction(user: User, campaign: Campaign, plan: PlanInput) -> Reaction:
     known of the family.
     """
     require_role(user, campaign, Role.AUTHOR)
-    check_level(family_of(plan.family_key), plan)
+    family = family_of(plan.family_key)
+    cage_mass(plan.cage)
+    check_level(family, plan)
     worked_out = work_out_lines(plan.cage, plan.lines)
     addend = store_addend(plan.addend, plan.addend_name) if plan.addend else None
     reaction = Reaction(
