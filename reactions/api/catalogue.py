@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
+from dataclasses import fields, is_dataclass
 from typing import Any
 
 from drf_spectacular.utils import extend_schema
