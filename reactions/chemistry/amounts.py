@@ -6,169 +6,66 @@ For each line, with n the amount of pure substance:
     mass on the balance = n · M / purity
     volume of a neat liquid = mass / density; of a solution = n / molarity
 
-Definitions of amount of substance and of molarity; common practice of the laboratory, no source.
+The cage weighed holds n(cage) = m · purity / M. From a mass of product wanted, n(cage) is
+m(product) / M(product) / yield. Definitions of amount of substance and of molarity; common practice
+of the laboratory, no source.
 """
 
 from __future__ import annotations
 
-from typing import Annotated
-
-from pydantic import BaseModel, ConfigDict, Field, model_validator
+import math
+from collections.abc import Iterator
 
 from reactions.chemistry.limiting import Supply, limiting_supply
 from reactions.chemistry.line_amounts import (
+    AmountsError,
     LineSubstance,
     amount_from_mass_mmol,
     amount_from_volume_mmol,
     mass_on_balance_mg,
     volume_to_take_ml,
 )
+from reactions.chemistry.line_references import CountedLine, planned_mmol, references
 from reactions.chemistry.masses import cage_molar_mass_g_per_mol, molar_mass_g_per_mol
 from reactions.chemistry.solvent_volume import VolumeAdvice, advise_volume
 from reactions.chemistry.structures import StructureError
+from reactions.chemistry.weighing_list import (
+    DEFAULT_MARGIN,
+    LARGEST,
+    AmountsLine,
+    AmountsRequest,
+    AmountsResult,
+    AmountsResultLine,
+)
 
-DEFAULT_MARGIN = 1.25
-_Positive = Annotated[float, Field(gt=0, le=1e9, allow_inf_nan=False)]
-_NotNegative = Annotated[float, Field(ge=0, le=1e9, allow_inf_nan=False)]
-_Share = Annotated[float, Field(gt=0, le=1, allow_inf_nan=False)]
-_Name = Annotated[str, Field(min_length=1, max_length=200)]
+__all__ = [
+    "DEFAULT_MARGIN",
+    "AmountsError",
+    "AmountsLine",
+    "AmountsRequest",
+    "AmountsResult",
+    "AmountsResultLine",
+    "amounts",
+]
 
-
-class _Value(BaseModel):
-    model_config = ConfigDict(frozen=True, extra="forbid", str_strip_whitespace=True)
-
-
-class AmountsLine(_Value):
-    """One substance to weigh or measure.
-
-    ``equivalents`` are mol per mol of cage, or of the line named by ``equivalents_of``.
-    ``needed_per_cage`` is how many equivalents the target itself consumes, by which what limits is
-    judged (None: not consumed, as a base or catalyst in excess). ``purity`` is a mass fraction. With ``molarity_mol_per_l`` the line is a solution. At most one actual amount is given.
-    """
-
-    name: _Name
-    role: Annotated[str, Field(max_length=40)] = "reagent"
-    smiles: Annotated[str, Field(max_length=2000)] | None = None
-    molar_mass_g_per_mol: _Positive | None = None
-    equivalents: _NotNegative | None = None
-    equivalents_of: Annotated[str, Field(max_length=200)] | None = None
-    needed_per_cage: _Positive | None = None
-    purity: _Share = 1.0
-    density_g_per_ml: _Positive | None = None
-    molarity_mol_per_l: _Positive | None = None
-    actual_mass_mg: _NotNegative | None = None
-    actual_volume_ml: _NotNegative | None = None
-    actual_mmol: _NotNegative | None = None
-
-    @model_validator(mode="after")
-    def _one_actual_amount(self) -> AmountsLine:
-        given = [self.actual_mass_mg, self.actual_volume_ml, self.actual_mmol]
-        if sum(value is not None for value in given) > 1:
-            raise ValueError(
-                f"{self.name} has more than one actual amount; give its mass, its volume or its "
-                "amount, not two."
-            )
-        return self
-
-
-class AmountsRequest(_Value):
-    """Cage, lines and solvent.
-
-    The cage is given as ``cage_mass_mg``, or as ``product_mass_mg`` wanted with ``expected_yield``
-    and the product's molar mass or structure. ``actual_cage_mass_mg`` is what was weighed.
-    """
-
-    cage: Annotated[str, Field(min_length=2, max_length=40)] = "C60"
-    cage_mass_mg: _Positive | None = None
-    cage_purity: _Share = 1.0
-    product_mass_mg: _Positive | None = None
-    expected_yield: _Share | None = None
-    product_molar_mass_g_per_mol: _Positive | None = None
-    product_smiles: Annotated[str, Field(max_length=2000)] | None = None
-    actual_cage_mass_mg: _Positive | None = None
-    solvent: Annotated[str, Field(max_length=80)] | None = None
-    solvent_volume_ml: _Positive | None = None
-    solubility_margin: Annotated[float, Field(ge=1, le=100, allow_inf_nan=False)] = DEFAULT_MARGIN
-    lines: Annotated[list[AmountsLine], Field(max_length=100)] = []
-
-    @model_validator(mode="after")
-    def _cage_given_once(self) -> AmountsRequest:
-        if (self.cage_mass_mg is None) == (self.product_mass_mg is None):
-            raise ValueError(
-                "Give either the mass of cage (cage_mass_mg) or the mass of product wanted "
-                "(product_mass_mg), not both and not neither."
-            )
-        if self.product_mass_mg is not None and (
-            self.expected_yield is None
-            or (self.product_molar_mass_g_per_mol is None) == (self.product_smiles is None)
-        ):
-            raise ValueError(
-                "A mass of product needs the expected yield (expected_yield) and either the "
-                "product's molar mass or its structure."
-            )
-        return self
-
-
-class AmountsResultLine(_Value):
-    """A line with its amounts; None where something needed is not given.
-
-    Each of the three actual amounts follows from the one that was given.
-    """
-
-    name: str
-    role: str
-    smiles: str | None
-    molar_mass_g_per_mol: float | None
-    equivalents: float | None
-    equivalents_of: str | None
-    needed_per_cage: float | None
-    purity: float
-    density_g_per_ml: float | None
-    molarity_mol_per_l: float | None
-    actual_mass_mg: float | None
-    actual_volume_ml: float | None
-    actual_mmol: float | None
-    mmol: float | None = None
-    mass_mg: float | None = None
-    volume_ml: float | None = None
-    actual_equivalents: float | None = None
-
-
-class AmountsResult(_Value):
-    """The weighing list worked out.
-
-    ``limiting`` names what runs out first: the cage or a line with role ``reagent`` or with
-    ``needed_per_cage``.
-    """
-
-    cage: str
-    cage_molar_mass_g_per_mol: float
-    cage_mass_mg: float
-    cage_mmol: float
-    actual_cage_mmol: float | None
-    lines: list[AmountsResultLine]
-    limiting: str
-    solvent_volume_ml: float | None
-    least_solvent_volume_ml: float | None
-    solubility_margin: float
-    warnings: list[str]
+_SAME_MOLAR_MASS = 1e-3
 
 
 def amounts(request: AmountsRequest) -> AmountsResult:
     """Work out a weighing list.
 
-    Raises ``ValueError`` (``StructureError`` for a structure that can't be read) naming the line.
+    Raises AmountsError, which names the field: a structure that can't be read, a reference to no
+    line, an amount beyond a tonne.
     """
-    cage_g_per_mol = cage_molar_mass_g_per_mol(request.cage)
+    cage_g_per_mol = _molar_mass_of_cage(request.cage)
     cage_mmol = _cage_mmol(request, cage_g_per_mol)
-    cage_mass_mg = cage_mmol * cage_g_per_mol / request.cage_purity
-    actual_cage_mmol = (
-        None
-        if request.actual_cage_mass_mg is None
-        else request.actual_cage_mass_mg * request.cage_purity / cage_g_per_mol
-    )
-    lines, warnings = _worked_out(request, cage_mmol, actual_cage_mmol)
-    advice = _solvent(request, cage_mass_mg * request.cage_purity)
+    cage_mass_mg = request.cage_mass_mg or cage_mmol * cage_g_per_mol / request.cage_purity
+    _check_size(cage_mass_mg, "mg", request.cage, "expected_yield")
+    weighed = request.actual_cage_mass_mg
+    actual_cage_mmol = None if weighed is None else weighed * request.cage_purity / cage_g_per_mol
+    substances = [_substance(place, line) for place, line in enumerate(request.lines)]
+    lines = _worked_out(request, substances, cage_mmol, actual_cage_mmol)
+    advice = _solvent(request, max(cage_mass_mg, weighed or 0.0))
     return AmountsResult(
         cage=request.cage,
         cage_molar_mass_g_per_mol=cage_g_per_mol,
@@ -176,110 +73,110 @@ def amounts(request: AmountsRequest) -> AmountsResult:
         cage_mmol=cage_mmol,
         actual_cage_mmol=actual_cage_mmol,
         lines=lines,
-        limiting=limiting_supply(_supplies(request.cage, cage_mmol, lines)),
+        limiting=limiting_supply(_planned_supplies(request.cage, cage_mmol, lines)),
+        actual_limiting=_actual_limiting(request.cage, cage_mmol, actual_cage_mmol, lines),
         solvent_volume_ml=advice.volume_ml,
         least_solvent_volume_ml=advice.least_volume_ml,
         solubility_margin=request.solubility_margin,
-        warnings=[*warnings, *advice.warnings],
+        warnings=[
+            *(
+                warning
+                for line, worked_out, substance in zip(
+                    request.lines, lines, substances, strict=True
+                )
+                for warning in _line_warnings(line, worked_out, substance)
+            ),
+            *advice.warnings,
+        ],
     )
+
+
+def _molar_mass_of_cage(cage: str) -> float:
+    try:
+        return cage_molar_mass_g_per_mol(cage)
+    except StructureError as error:
+        raise AmountsError("cage", str(error)) from error
 
 
 def _cage_mmol(request: AmountsRequest, cage_g_per_mol: float) -> float:
     if request.cage_mass_mg is not None:
         return request.cage_mass_mg * request.cage_purity / cage_g_per_mol
-    product = request.product_molar_mass_g_per_mol or molar_mass_g_per_mol(
-        request.product_smiles or ""
-    )
-    if product <= cage_g_per_mol:
-        raise ValueError(
-            f"The product's molar mass, {product:.2f} g/mol, is not above that of {request.cage}, "
-            f"{cage_g_per_mol:.2f} g/mol; check it."
+    field = "product_smiles" if request.product_smiles else "product_molar_mass_g_per_mol"
+    try:
+        product_g_per_mol = request.product_molar_mass_g_per_mol or molar_mass_g_per_mol(
+            request.product_smiles or ""
         )
-    return (request.product_mass_mg or 0.0) / product / (request.expected_yield or 1.0)
-
-
-def _worked_out(
-    request: AmountsRequest, cage_mmol: float, actual_cage_mmol: float | None
-) -> tuple[list[AmountsResultLine], list[str]]:
-    planned = _resolved_mmol(request.lines, cage_mmol)
-    lines: list[AmountsResultLine] = []
-    warnings: list[str] = []
-    substances = [_substance(line) for line in request.lines]
-    actual = [
-        _actual_mmol(line, substance)
-        for line, substance in zip(request.lines, substances, strict=True)
-    ]
-    for place, (line, substance) in enumerate(zip(request.lines, substances, strict=True)):
-        mmol = planned[place]
-        reference = _reference_actual(request.lines, place, actual, actual_cage_mmol)
-        lines.append(
-            AmountsResultLine(
-                **{
-                    **line.model_dump(),
-                    **_actual_amounts(line, actual[place], substance),
-                    "molar_mass_g_per_mol": substance.molar_mass_g_per_mol,
-                },
-                mmol=mmol,
-                mass_mg=None if mmol is None else mass_on_balance_mg(mmol, substance),
-                volume_ml=None if mmol is None else volume_to_take_ml(mmol, substance),
-                actual_equivalents=_ratio(actual[place], reference),
-            )
+    except StructureError as error:
+        raise AmountsError(field, str(error)) from error
+    if product_g_per_mol <= cage_g_per_mol:
+        raise AmountsError(
+            field,
+            f"The product's molar mass, {product_g_per_mol:.2f} g/mol, is not above that of "
+            f"{request.cage}, {cage_g_per_mol:.2f} g/mol; give that of the whole product.",
         )
-        if mmol is not None and not (substance.can_be_weighed or substance.is_solution):
-            warnings.append(
-                f"{line.name}: no structure and no molar mass are given, so there is no mass to "
-                "weigh."
-            )
-    return lines, warnings
+    return (request.product_mass_mg or 0.0) / product_g_per_mol / (request.expected_yield or 1.0)
 
 
-def _substance(line: AmountsLine) -> LineSubstance:
+def _substance(place: int, line: AmountsLine) -> LineSubstance:
+    if line.role == "cage":
+        raise AmountsError(
+            f"lines.{place}.role",
+            f"{line.name} is called the cage, which stands beside the lines; give the line another "
+            "role, such as reagent.",
+        )
     molar_mass = line.molar_mass_g_per_mol
     if line.smiles:
         try:
             molar_mass = molar_mass_g_per_mol(line.smiles)
         except StructureError as error:
-            raise StructureError(f"{line.name}: {error}") from error
+            raise AmountsError(f"lines.{place}.smiles", f"{line.name}: {error}") from error
     return LineSubstance(molar_mass, line.purity, line.density_g_per_ml, line.molarity_mol_per_l)
 
 
-def _resolved_mmol(lines: list[AmountsLine], cage_mmol: float) -> list[float | None]:
-    """Return the planned amounts in mmol, following references between lines to the cage."""
-    places = _places_by_name(lines)
-    known: dict[int, float | None] = {}
-
-    def resolve(place: int, above: tuple[int, ...]) -> float | None:
-        if place in above:
-            raise ValueError(
-                f"The equivalents of {lines[place].name} refer in a circle; let one line refer to "
-                "the cage."
-            )
-        if place not in known:
-            line = lines[place]
-            reference = _reference_place(line, places)
-            of = cage_mmol if reference is None else resolve(reference, (*above, place))
-            known[place] = None if line.equivalents is None or of is None else line.equivalents * of
-        return known[place]
-
-    return [resolve(place, ()) for place in range(len(lines))]
-
-
-def _places_by_name(lines: list[AmountsLine]) -> dict[str, int]:
-    places: dict[str, int] = {}
-    for place, line in enumerate(lines):
-        places.setdefault(line.name, place)
-    return places
-
-
-def _reference_place(line: AmountsLine, places: dict[str, int]) -> int | None:
-    """Return the place of the line that ``equivalents_of`` names; None for the cage."""
-    if not line.equivalents_of:
-        return None
-    if line.equivalents_of not in places:
-        raise ValueError(
-            f"{line.name} counts its equivalents by “{line.equivalents_of}”, which is no line here."
+def _worked_out(
+    request: AmountsRequest,
+    substances: list[LineSubstance],
+    cage_mmol: float,
+    actual_cage_mmol: float | None,
+) -> list[AmountsResultLine]:
+    counted = [
+        CountedLine(line.name, line.equivalents, line.equivalents_of) for line in request.lines
+    ]
+    referred = references(request.cage, counted)
+    planned = planned_mmol(counted, referred, cage_mmol)
+    actual = [
+        _actual_mmol(line, substance)
+        for line, substance in zip(request.lines, substances, strict=True)
+    ]
+    lines = []
+    for place, (line, substance) in enumerate(zip(request.lines, substances, strict=True)):
+        reference = referred[place]
+        whole = (
+            _first(actual_cage_mmol, cage_mmol)
+            if reference is None
+            else _first(actual[reference], planned[reference])
         )
-    return places[line.equivalents_of]
+        figures = {
+            **_planned_figures(planned[place], substance),
+            **_actual_figures(line, actual[place], substance),
+            "actual_equivalents": _ratio(actual[place], whole),
+        }
+        for name, value in figures.items():
+            field = "equivalents" if name in {"mmol", "mass_mg", "volume_ml"} else name
+            _check_size(value, name.rpartition("_")[2], line.name, f"lines.{place}.{field}")
+        known = {**line.model_dump(), "molar_mass_g_per_mol": substance.molar_mass_g_per_mol}
+        lines.append(AmountsResultLine(**{**known, **figures}))
+    return lines
+
+
+def _planned_figures(mmol: float | None, substance: LineSubstance) -> dict[str, float | None]:
+    if mmol is None:
+        return {"mmol": None, "mass_mg": None, "volume_ml": None}
+    return {
+        "mmol": mmol,
+        "mass_mg": mass_on_balance_mg(mmol, substance),
+        "volume_ml": volume_to_take_ml(mmol, substance),
+    }
 
 
 def _actual_mmol(line: AmountsLine, substance: LineSubstance) -> float | None:
@@ -292,40 +189,86 @@ def _actual_mmol(line: AmountsLine, substance: LineSubstance) -> float | None:
     return None
 
 
-def _actual_amounts(
-    line: AmountsLine, actual_mmol: float | None, substance: LineSubstance
+def _actual_figures(
+    line: AmountsLine, mmol: float | None, substance: LineSubstance
 ) -> dict[str, float | None]:
     mass, volume = line.actual_mass_mg, line.actual_volume_ml
-    if actual_mmol is not None:
-        mass = mass_on_balance_mg(actual_mmol, substance) if mass is None else mass
-        volume = volume_to_take_ml(actual_mmol, substance) if volume is None else volume
-    return {"actual_mmol": actual_mmol, "actual_mass_mg": mass, "actual_volume_ml": volume}
+    if mmol is not None:
+        mass = mass_on_balance_mg(mmol, substance) if mass is None else mass
+        volume = volume_to_take_ml(mmol, substance) if volume is None else volume
+    return {"actual_mmol": mmol, "actual_mass_mg": mass, "actual_volume_ml": volume}
 
 
-def _reference_actual(
-    lines: list[AmountsLine],
-    place: int,
-    actual: list[float | None],
-    actual_cage_mmol: float | None,
-) -> float | None:
-    reference = _reference_place(lines[place], _places_by_name(lines))
-    return actual_cage_mmol if reference is None else actual[reference]
+def _first(*values: float | None) -> float | None:
+    return next((value for value in values if value is not None), None)
 
 
 def _ratio(part: float | None, whole: float | None) -> float | None:
     return part / whole if part is not None and whole else None
 
 
-def _supplies(cage: str, cage_mmol: float, lines: list[AmountsResultLine]) -> list[Supply]:
-    supplies = [Supply(cage, cage_mmol)]
-    for line in lines:
-        is_consumed = line.role == "reagent" or line.needed_per_cage is not None
-        if is_consumed and line.mmol is not None:
-            supplies.append(Supply(line.name, line.mmol, line.needed_per_cage or 1.0))
-    return supplies
+def _check_size(value: float | None, unit: str, name: str, field: str) -> None:
+    if value is not None and not (math.isfinite(value) and value <= LARGEST):
+        raise AmountsError(
+            field,
+            f"{name} comes to {value:.3g} {unit}, beyond anything that is weighed out; check its "
+            "equivalents, purity, density and strength.",
+        )
+
+
+def _planned_supplies(cage: str, cage_mmol: float, lines: list[AmountsResultLine]) -> list[Supply]:
+    return [Supply(cage, cage_mmol), *_supplies([(line, line.mmol) for line in lines])]
+
+
+def _actual_limiting(
+    cage: str, cage_mmol: float, actual_cage_mmol: float | None, lines: list[AmountsResultLine]
+) -> str | None:
+    """Return what limits by what went in, each amount not yet given being taken as planned."""
+    if actual_cage_mmol is None and all(line.actual_mmol is None for line in lines):
+        return None
+    used = [(line, _first(line.actual_mmol, line.mmol)) for line in lines]
+    first = _first(actual_cage_mmol, cage_mmol) or 0.0
+    return limiting_supply([Supply(cage, first), *_supplies(used)])
+
+
+def _supplies(used: list[tuple[AmountsResultLine, float | None]]) -> Iterator[Supply]:
+    for line, mmol in used:
+        may_limit = line.role == "reagent" or line.needed_per_cage is not None
+        if may_limit and mmol is not None:
+            yield Supply(line.name, mmol, line.needed_per_cage or 1.0)
+
+
+def _line_warnings(
+    line: AmountsLine, worked_out: AmountsResultLine, substance: LineSubstance
+) -> Iterator[str]:
+    if worked_out.mmol is not None and not (substance.can_be_weighed or substance.is_solution):
+        yield (
+            f"{line.name}: no structure and no molar mass are given, so there is no mass to weigh."
+        )
+    typed, worked = line.molar_mass_g_per_mol, substance.molar_mass_g_per_mol
+    if typed and worked and abs(typed - worked) > _SAME_MOLAR_MASS * worked:
+        yield (
+            f"{line.name}: the structure gives {worked:.2f} g/mol, not the {typed:.2f} g/mol "
+            "typed; the structure is followed. Is crystal water or a counter-ion missing?"
+        )
+    if substance.is_solution and line.purity != 1:
+        yield (
+            f"{line.name}: a solution is measured by its molarity alone; its purity of "
+            f"{100 * line.purity:g} % is left out of account."
+        )
+    if worked_out.actual_mmol is None:
+        if line.actual_volume_ml is not None:
+            yield (
+                f"{line.name}: a volume becomes an amount only with a density and a molar mass, or "
+                "with a molarity; give what is missing."
+            )
+        elif line.actual_mass_mg is not None:
+            missing = "a density" if substance.is_solution else "a structure or a molar mass"
+            yield f"{line.name}: a mass becomes an amount only with {missing}; give it."
 
 
 def _solvent(request: AmountsRequest, cage_mass_mg: float) -> VolumeAdvice:
+    """Return the volume for all that is weighed: what isn't cage mostly has to dissolve too."""
     if not request.solvent:
         return VolumeAdvice(request.solvent_volume_ml, None, ())
     return advise_volume(

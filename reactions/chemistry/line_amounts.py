@@ -11,6 +11,21 @@ from dataclasses import dataclass
 _MG_PER_G = 1000.0
 
 
+class AmountsError(ValueError):
+    """Amounts that can't be worked out; ``field`` is the path of what is wrong.
+
+    Paths are those of the request: ``lines.1.smiles``, ``cage``.
+    """
+
+    def __init__(self, field: str, message: str) -> None:
+        super().__init__(message)
+        self.field = field
+
+    def __reduce__(self) -> tuple[type[AmountsError], tuple[str, str]]:
+        """Pickle with the field, for work in another process."""
+        return type(self), (self.field, str(self))
+
+
 @dataclass(frozen=True)
 class LineSubstance:
     """What turns amounts of one substance into masses and volumes; None where not given."""

@@ -35,6 +35,7 @@ def formula(smiles: str) -> str:
     return str(rdMolDescriptors.CalcMolFormula(_substance(smiles)))
 
 
+@lru_cache(maxsize=4096)
 def molar_mass_g_per_mol(smiles: str) -> float:
     """Return the average molar mass in g/mol, all dot-separated parts together.
 

@@ -4,7 +4,12 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from reactions.chemistry.quantity_text import format_mass, format_volume
 from reactions.chemistry.solvents import least_volume_ml, published_solubilities
+
+# "Practically insoluble": more than 10 L per g; European Pharmacopoeia, General Notices 1.4
+# (from memory).
+PRACTICALLY_INSOLUBLE_MG_PER_ML = 0.1
 
 
 @dataclass(frozen=True)
@@ -21,9 +26,9 @@ def advise_volume(
 ) -> VolumeAdvice:
     """Return the volume for ``cage_mass_mg`` of cage: the chosen, else the least that dissolves it.
 
-    The least volume follows from the lowest published solubility at 25 °C, times ``margin``. A
-    chosen volume that can't dissolve the cage, an unknown solubility, or a solvent in which the
-    cage is practically insoluble gives a warning in words.
+    The least volume follows from the lowest published solubility at 25 °C, times ``margin`` (1 or
+    more). A chosen volume that can't dissolve the cage, an unknown solubility, or a solvent in
+    which the cage is practically insoluble (below 0.1 mg/mL) gives a warning in words.
     """
     published = published_solubilities(cage, solvent)
     if not published:
@@ -36,24 +41,33 @@ def advise_volume(
             ),
         )
     lowest = published[0].mg_per_ml
-    if lowest == 0:
-        return VolumeAdvice(
-            chosen_ml, None, (f"{cage} is practically insoluble in {solvent} at 25 °C.",)
-        )
     least = least_volume_ml(cage, cage_mass_mg, solvent, margin)
-    if chosen_ml is None or least is None:
-        return VolumeAdvice(least, least, ())
-    bare = least / margin
-    if chosen_ml < bare:
+    volume = least if chosen_ml is None else chosen_ml
+    if least is None or lowest < PRACTICALLY_INSOLUBLE_MG_PER_ML:
+        return VolumeAdvice(volume, least, (_insoluble(cage, solvent, lowest, least),))
+    if chosen_ml is None or chosen_ml >= least:
+        return VolumeAdvice(volume, least, ())
+    if chosen_ml < cage_mass_mg / lowest:
         warning = (
-            f"{chosen_ml:.4g} mL of {solvent} dissolves {chosen_ml * lowest:.4g} mg of {cage} at "
-            f"25 °C ({lowest:g} mg/mL), not {cage_mass_mg:.4g} mg; take at least {least:.4g} mL."
+            f"{format_volume(chosen_ml)} of {solvent} dissolves {format_mass(chosen_ml * lowest)} "
+            f"of {cage} at 25 °C ({lowest:g} mg/mL), not {format_mass(cage_mass_mg)}; take at "
+            f"least {format_volume(least)}."
         )
-        return VolumeAdvice(chosen_ml, least, (warning,))
-    if chosen_ml < least:
+    else:
         warning = (
-            f"{chosen_ml:.4g} mL of {solvent} just dissolves the {cage} at 25 °C; with a margin of "
-            f"{margin:g} it takes {least:.4g} mL."
+            f"{format_volume(chosen_ml)} of {solvent} just dissolves the {cage} at 25 °C; with a "
+            f"margin of {margin:g} it takes {format_volume(least)}."
         )
-        return VolumeAdvice(chosen_ml, least, (warning,))
-    return VolumeAdvice(chosen_ml, least, ())
+    return VolumeAdvice(volume, least, (warning,))
+
+
+def _insoluble(cage: str, solvent: str, lowest: float, least: float | None) -> str:
+    if least is None:
+        return (
+            f"{cage} is practically insoluble in {solvent} at 25 °C: no volume dissolves it. "
+            "Choose another solvent, or run it as a suspension."
+        )
+    return (
+        f"{cage} is practically insoluble in {solvent} at 25 °C ({lowest:g} mg/mL): dissolving it "
+        f"takes {format_volume(least)}. Choose another solvent, or run it as a suspension."
+    )

@@ -3,7 +3,8 @@
 Tables: ``solvents.csv`` and ``solubilities.csv``; each row names its source. Where published
 solubilities differ all are kept, and a plan takes the lowest, so that the volume suffices whichever
 is right. Solubilities hold at room temperature (25 °C); they pass through a maximum with
-temperature in several solvents, so nothing is extrapolated.
+temperature in several solvents, so nothing is extrapolated. Where published flash points and
+autoignition temperatures differ, the table has the lower.
 """
 
 from __future__ import annotations
@@ -14,6 +15,9 @@ from functools import cache
 from types import MappingProxyType
 from typing import TYPE_CHECKING
 
+from reactions.chemistry.folded_names import folded
+from reactions.chemistry.masses import cage_formula
+from reactions.chemistry.structures import StructureError
 from reactions.chemistry.tables import read_csv_table
 
 if TYPE_CHECKING:
@@ -79,23 +83,25 @@ def solvents() -> Mapping[str, Solvent]:
 def _names() -> Mapping[str, str]:
     return MappingProxyType(
         {
-            name.casefold(): row.name
+            folded(name): row.name
             for row in solvents().values()
-            for name in (row.name, *row.synonyms)
+            for name in (row.name, *row.synonyms, row.cas_number)
         }
     )
 
 
 def solvent(name: str) -> Solvent:
-    """Return the solvent of this name or synonym; capitals don't count.
+    """Return the solvent of this name, synonym or CAS number.
 
-    Raises UnknownSolventError naming the nearest names.
+    Capitals, blanks and the kind of hyphen don't count. Raises UnknownSolventError naming the
+    nearest names.
     """
-    known = _names().get(name.strip().casefold())
+    known = _names().get(folded(name))
     if known is None:
-        near = difflib.get_close_matches(name.strip().casefold(), _names(), n=3)
-        hint = f" Did you mean {' or '.join(_names()[other] for other in near)}?" if near else ""
-        raise UnknownSolventError(f"“{name}” is not in the table of solvents.{hint}")
+        near = difflib.get_close_matches(folded(name), _names(), n=3)
+        nearest = dict.fromkeys(_names()[other] for other in near)
+        hint = f" Did you mean {' or '.join(nearest)}?" if nearest else ""
+        raise UnknownSolventError(f"“{name.strip()}” is not in the table of solvents.{hint}")
     return solvents()[known]
 
 
@@ -118,18 +124,23 @@ def solubilities() -> tuple[Solubility, ...]:
 def published_solubilities(cage: str, name: str) -> tuple[Solubility, ...]:
     """Return what is published for ``cage`` in a solvent, lowest first; empty when nothing is.
 
-    A solvent that the table doesn't know has nothing published here.
+    A cage or a solvent that isn't known here has nothing published here. The symmetry of a cage
+    (``C60-Ih``) is left out of account, since the table has cages of one isomer only.
     """
     try:
         known = solvent(name).name
-    except UnknownSolventError:
+        bare_cage = cage_formula(cage)
+    except (UnknownSolventError, StructureError):
         return ()
-    found = [row for row in solubilities() if row.cage == cage and row.solvent == known]
+    found = [row for row in solubilities() if row.cage == bare_cage and row.solvent == known]
     return tuple(sorted(found, key=lambda row: row.mg_per_ml))
 
 
 def solubility_mg_per_ml(cage: str, name: str) -> float | None:
-    """Return the lowest published solubility in mg/mL at 25 °C; None when none is known."""
+    """Return the lowest published solubility in mg/mL at 25 °C; None when none is known.
+
+    0 stands for practically insoluble.
+    """
     found = published_solubilities(cage, name)
     return found[0].mg_per_ml if found else None
 
