@@ -12,4 +12,5 @@ urlpatterns: list[URLPattern | URLResolver] = [
     path("", include("reactions.pages.structure.urls")),
     path("", include("reactions.pages.history.urls")),
     path("", include("reactions.pages.planner.urls")),
+    path("", include("reactions.pages.families.urls")),
 ]

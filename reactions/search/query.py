@@ -84,8 +84,8 @@ class BranchCount:
 class Answer:
     """The hits of a query, and how they spread over the family tree.
 
-    ``hits`` is lazy, with what a row of a list shows. The tree counts what the query would find
-    in each family if it didn't ask for one.
+    ``hits`` is lazy, with what a row of a list shows. The tree has the families of all that the
+    person may see, and counts what the query would find in each if it didn't ask for one.
     """
 
     query: SearchQuery
@@ -107,10 +107,10 @@ def find(query: SearchQuery, user: AbstractBaseUser) -> QuerySet[Reaction]:
 def family_counts(query: SearchQuery, user: AbstractBaseUser) -> tuple[BranchCount, ...]:
     """Return the family tree with the counts of what the query finds in each family.
 
-    Families asked for do not narrow the counts, so that one can be chosen beside another. Raises
-    ``FieldErrors`` as ``find`` does.
+    It has the families of all that ``user`` may see. Families asked for do not narrow the counts,
+    so that one can be chosen beside another. Raises ``FieldErrors`` as ``find`` does.
     """
-    return _tree(_in_any_family(query, user), query, known_families())
+    return _tree(_in_any_family(query, user), query, known_families(), user)
 
 
 def answer(query: SearchQuery, user: AbstractBaseUser) -> Answer:
@@ -121,7 +121,7 @@ def answer(query: SearchQuery, user: AbstractBaseUser) -> Answer:
     families = known_families()
     found = _in_any_family(query, user)
     hits = _in_order(_in_families(found, query, families), query)
-    return Answer(query, hits, _tree(found, query, families), families)
+    return Answer(query, hits, _tree(found, query, families, user), families)
 
 
 def _in_any_family(query: SearchQuery, user: AbstractBaseUser) -> ReactionQuerySet:
@@ -217,20 +217,28 @@ def _in_order(found: ReactionQuerySet, query: SearchQuery) -> ReactionQuerySet:
 
 
 def _tree(
-    found: ReactionQuerySet, query: SearchQuery, families: Mapping[str, Family]
+    found: ReactionQuerySet,
+    query: SearchQuery,
+    families: Mapping[str, Family],
+    user: AbstractBaseUser,
 ) -> tuple[BranchCount, ...]:
-    rows = found.order_by().values_list("family_key").annotate(count=Count("pk"))
-    counts: dict[str, int] = dict(rows)
+    counts: dict[str, int] = dict(
+        found.order_by().values_list("family_key").annotate(count=Count("pk"))
+    )
+    visible = Reaction.objects.visible_to(user).order_by().values_list("family_key", flat=True)
+    keys = {*visible.distinct(), *query.family}
     branches: dict[str, list[FamilyCount]] = {}
     for row in families.values():
-        branches.setdefault(row.branch, []).append(
-            FamilyCount(row.key, row.name, counts.pop(row.key, 0), row.key in query.family)
-        )
-    tree = [_branch(name, members, query) for name, members in branches.items()]
-    if counts:
-        unknown = [FamilyCount(key, key, count, False) for key, count in sorted(counts.items())]
-        tree.append(_branch(UNKNOWN_BRANCH, unknown, query))
-    return tuple(tree)
+        if row.key in keys:
+            branches.setdefault(row.branch, []).append(
+                FamilyCount(row.key, row.name, counts.get(row.key, 0), row.key in query.family)
+            )
+    unknown = keys - families.keys() - {row.branch for row in families.values()} - {UNKNOWN_BRANCH}
+    if unknown:
+        branches[UNKNOWN_BRANCH] = [
+            FamilyCount(key, key, counts.get(key, 0), False) for key in sorted(unknown)
+        ]
+    return tuple(_branch(name, members, query) for name, members in branches.items())
 
 
 def _branch(name: str, members: list[FamilyCount], query: SearchQuery) -> BranchCount:

@@ -19,6 +19,7 @@ _DEFAULT_SITES = 30
 _DEFAULT_EFFICIENCY = 0.7
 _VARIATION = 0.05
 _CURVE_POINTS = 81
+_LEAST_UPTAKE_SHOWN = 2.0
 # Levels rarer than this are left out of what is stored.
 _LEAST_STORED = 1e-9
 # Where the messages of the calculators belong in the form.
@@ -210,7 +211,9 @@ def _curve(fields: dict[str, Any], model: ModelInput, equivalents: float) -> Cur
         CurveRequest(
             **fields,
             reagent_efficiency=model.reagent_efficiency,
-            highest_equivalents=max(2.0 * equivalents, 1e-3),
+            highest_equivalents=max(
+                2.0 * equivalents, min(_LEAST_UPTAKE_SHOWN, model.sites) / model.reagent_efficiency
+            ),
             points=_CURVE_POINTS,
             highest_level_shown=min(model.sites, 8),
         )

@@ -34,6 +34,18 @@ _MODELS = (
     ("poisson", "Poisson"),
 )
 CAGES = ("C60", "C70", "C76", "C78", "C84")
+# What a blank field stands for, or how to write in it.
+_WHEN_BLANK = {
+    "cage_mass": "e.g. 0.5 g",
+    "cage_purity": "100 %",
+    "product_mass": "e.g. 200 mg",
+    "expected_yield": "e.g. 40 %",
+    "reagent_efficiency": "70 %",
+    "attenuation": "1",
+    "solvent_volume": "the least",
+    "temperature": "e.g. 110 °C",
+    "duration": "e.g. 2 h",
+}
 _PLAIN = {"autocomplete": "off", "spellcheck": "false"}
 
 
@@ -105,6 +117,8 @@ class PlannerForm(forms.Form):
         only = campaigns if len(campaigns) == 1 else [("", "choose"), *campaigns]
         _choices(self.fields["campaign"], only)
         _choices(self.fields["family"], [("", "choose"), *_families_by_branch(families)])
+        for name, words in _WHEN_BLANK.items():
+            self.fields[name].widget.attrs["placeholder"] = words
         key = self["family"].value()
         self.fields["usual_addend"].widget = forms.Select(
             choices=[("", "choose"), *_addends_of(str(key or ""))]

@@ -15,6 +15,13 @@ from reactions.pages.sheet.fields import density_field, molarity_field, share_fi
 MOST_LINES = 16
 PER_REAGENT, PER_CAGE = "reagent", "cage"
 _ROLES = [(role.value, role.label) for role in ComponentRole if role != ComponentRole.CAGE]
+# What a blank field stands for, or how to write in it.
+_WHEN_BLANK = {
+    "equivalents": "",
+    "purity": "100 %",
+    "density": "e.g. 0.87 g/mL",
+    "molarity": "e.g. 1.6 M",
+}
 _PLAIN = {"autocomplete": "off", "spellcheck": "false"}
 
 
@@ -38,6 +45,11 @@ class PlannedLineForm(forms.Form):
     molarity = molarity_field(label="Strength, of a solution")
 
     component: Component | None = None
+
+    def __init__(self, *args: Any, **kwargs: Any) -> None:
+        super().__init__(*args, auto_id="plan_%s", **kwargs)
+        for name, words in _WHEN_BLANK.items():
+            self.fields[name].widget.attrs["placeholder"] = words
 
     @property
     def place(self) -> int:

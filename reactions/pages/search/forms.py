@@ -29,7 +29,7 @@ _SORTS = (
     ("changed", "longest unchanged"),
 )
 _KINDS = (
-    ("auto", "SMILES or SMARTS, as it reads"),
+    ("auto", "SMILES or SMARTS"),
     ("smiles", "SMILES"),
     ("smarts", "SMARTS"),
     ("molfile", "molfile"),
@@ -81,14 +81,14 @@ class SearchForm(forms.Form):
     substructure_kind = forms.CharField(
         required=False, label="Read it as", widget=forms.Select(choices=_KINDS)
     )
-    temperature_c_lowest = _end("120 °C")
-    temperature_c_highest = _end("150 °C")
-    duration_min_lowest = _end("1 h")
-    duration_min_highest = _end("24 h")
-    level_lowest = _end("1")
-    level_highest = _end("3")
-    yield_percent_lowest = _end("40 %")
-    yield_percent_highest = _end("100 %")
+    temperature_c_lowest = _end("°C")
+    temperature_c_highest = _end("°C")
+    duration_min_lowest = _end("min")
+    duration_min_highest = _end("min")
+    level_lowest = _end("0")
+    level_highest = _end("6")
+    yield_percent_lowest = _end("%")
+    yield_percent_highest = _end("%")
     performed_from = forms.CharField(required=False, widget=forms.TextInput(attrs={"type": "date"}))
     performed_to = forms.CharField(required=False, widget=forms.TextInput(attrs={"type": "date"}))
     addend = forms.CharField(required=False, widget=forms.HiddenInput)

@@ -27,22 +27,22 @@ ON_A_PAGE = 25
 def search(request: HttpRequest) -> HttpResponse:
     """Answer the question in the address; htmx gets the answer alone, and the address to show.
 
-    A question that can't be answered is said so at its fields, with status 422.
+    What can't be answered in a question is said at its fields, on a whole page with status 422.
     """
     question = ask(request.GET, person_of(request))
     context: dict[str, Any] = {
         "navigation": "search",
         "question": question,
         "form": question.form,
-        "tree": [branch for branch in question.tree if branch.count or _is_chosen(branch)],
+        "tree": question.tree,
         **_page_of(question, request.GET.get("page")),
     }
-    status = 200 if question.found else 422
     if is_enhanced(request):
-        response = render(request, "reactions/search/answer.html", context, status=status)
+        response = render(request, "reactions/search/answer.html", context)
         response["HX-Push-Url"] = _address(question.address)
     else:
         context["shown"] = _shown(question)
+        status = 200 if question.found else 422
         response = render(request, "reactions/search/search.html", context, status=status)
     patch_vary_headers(response, ["HX-Request"])
     return response
@@ -66,10 +66,6 @@ def _page_of(question: Question, number: str | None) -> dict[str, Any]:
 def _family_name(reaction: Reaction, families: Any) -> str:
     family: Family | None = families.get(reaction.family_key)
     return family.name if family else reaction.family_key
-
-
-def _is_chosen(branch: Any) -> bool:
-    return branch.is_chosen or any(member.is_chosen for member in branch.families)
 
 
 def _address(parameters: str, **more: object) -> str:

@@ -13,7 +13,7 @@ from reactions.chemistry.depiction import depict
 from reactions.chemistry.structures import StructureError
 from reactions.chemistry.substructure import QueryKind, outline_query
 
-PICTURE_WIDTH, PICTURE_HEIGHT = 240, 150
+_ADDEND_SIZE, _QUERY_SIZE = (240, 150), (180, 110)
 
 
 @dataclass(frozen=True)
@@ -39,7 +39,7 @@ def drawn(smiles: str, width: int, height: int, title: str = "") -> SafeString:
 def show_addend(text: str) -> ShownStructure:
     """Return what is understood of an addend; raises ``StructureError``."""
     addend = run_bounded(read_addend, text)
-    return ShownStructure(drawn(addend.smiles, PICTURE_WIDTH, PICTURE_HEIGHT), addend)
+    return ShownStructure(drawn(addend.smiles, *_ADDEND_SIZE), addend)
 
 
 def show_query(text: str, kind: QueryKind) -> ShownStructure:
@@ -48,6 +48,6 @@ def show_query(text: str, kind: QueryKind) -> ShownStructure:
     if kind == "smarts":
         return ShownStructure(SafeString(""), smarts=smarts)
     try:
-        return ShownStructure(drawn(text, PICTURE_WIDTH, PICTURE_HEIGHT))
+        return ShownStructure(drawn(text, *_QUERY_SIZE))
     except StructureError:
         return ShownStructure(SafeString(""), smarts=smarts)

@@ -12,7 +12,7 @@ from django.views.decorators.http import require_POST, require_safe
 from reactions.chemistry.structures import StructureError
 from reactions.chemistry.substructure import QueryKind
 from reactions.models import Addend, Reaction
-from reactions.pages.access import member_page, person_of
+from reactions.pages.access import is_enhanced, member_page, person_of
 from reactions.pages.structure.showing import drawn, show_addend, show_query
 
 _PICTURE_SIZE = (192, 144)
@@ -21,7 +21,7 @@ _PICTURE_SIZE = (192, 144)
 @require_POST
 @member_page
 def shown(request: HttpRequest) -> HttpResponse:
-    """Show back the structure in the field that ``field`` names; 422 for one that can't be read.
+    """Show back the structure in the field that ``field`` names, or say why it can't be read.
 
     ``purpose`` says what it is for: an ``addend`` with its attachment points, or a ``query`` of the
     kind in ``<field>_kind``. ``slot`` is the place on the page where an error belongs.
@@ -38,7 +38,7 @@ def shown(request: HttpRequest) -> HttpResponse:
             context["shown"] = show_addend(text)
     except StructureError as error:
         context["error"] = str(error)
-    status = 422 if "error" in context else 200
+    status = 422 if "error" in context and not is_enhanced(request) else 200
     return render(request, "reactions/structure/answer.html", context, status=status)
 
 

@@ -31,6 +31,33 @@ function fill(select) {
   select.dataset.fills = "";
 }
 
+// What is typed while the form is being filled anew must not be lost with the old form.
+const meanwhile = new Map();
+const isFillingAnew = (event) => event.detail.target?.id === "planner";
+
+document.addEventListener("input", (event) => {
+  if (event.target.closest("#planner") && event.target.name) {
+    meanwhile.set(event.target.name, event.target.value);
+  }
+});
+
+document.body.addEventListener("htmx:beforeRequest", (event) => {
+  if (isFillingAnew(event)) meanwhile.clear();
+});
+
+document.body.addEventListener("htmx:afterSettle", (event) => {
+  if (!isFillingAnew(event)) return;
+  for (const [name, value] of meanwhile) {
+    const field = document.getElementById("planner").elements[name];
+    if (!field || field.value === value) continue;
+    field.value = value;
+    (field.length === undefined ? field : field[0]).dispatchEvent(
+      new Event("input", { bubbles: true }),
+    );
+  }
+  meanwhile.clear();
+});
+
 function mount() {
   for (const field of document.querySelectorAll("[data-slide]:not([data-slides])")) slide(field);
   for (const select of document.querySelectorAll("#plan_usual_addend:not([data-fills])")) fill(select);

@@ -1,0 +1,1 @@
+"""The addition families: the table, and the lab's own."""
