@@ -29,7 +29,6 @@ INSTALLED_APPS = [
     "rest_framework",
     "rest_framework.authtoken",
     "drf_spectacular",
-    "drf_spectacular_sidecar",
     "django_htmx",
     "csp",
     "django.contrib.admin",
@@ -141,8 +140,6 @@ SPECTACULAR_SETTINGS = {
     "VERSION": "1",
     "OAS_VERSION": "3.1.0",
     "SERVE_INCLUDE_SCHEMA": False,
-    "SWAGGER_UI_DIST": "SIDECAR",
-    "SWAGGER_UI_FAVICON_HREF": "SIDECAR",
 }
 
 CELERY_BROKER_URL = os.environ.get("LABBOOK_BROKER_URL", "memory://")

@@ -3,10 +3,10 @@
 from __future__ import annotations
 
 from django.contrib.auth import authenticate
-from django.contrib.auth.decorators import login_not_required, login_required
+from django.contrib.auth.decorators import login_not_required
 from django.utils.decorators import method_decorator
 from drf_spectacular.utils import extend_schema
-from drf_spectacular.views import SpectacularAPIView, SpectacularSwaggerSplitView
+from drf_spectacular.views import SpectacularAPIView
 from pydantic import Field
 from rest_framework.authentication import SessionAuthentication, TokenAuthentication
 from rest_framework.permissions import AllowAny, IsAuthenticated
@@ -76,12 +76,3 @@ class Schema(SpectacularAPIView):
 
     permission_classes = [IsAuthenticated]
     authentication_classes = [SessionAuthentication, TokenAuthentication]
-
-
-@method_decorator(login_required, name="dispatch")
-class Documentation(SpectacularSwaggerSplitView):
-    """The description to read and try in the browser."""
-
-    url_name = "reactions:api-schema"
-    permission_classes = [IsAuthenticated]
-    authentication_classes = [SessionAuthentication]

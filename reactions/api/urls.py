@@ -6,6 +6,7 @@ from django.urls import path
 
 from reactions.api import access, catalogue, computing, records
 from reactions.api.base import token_is_installed
+from reactions.api.description import description
 from reactions.calculators import CALCULATORS
 
 _RECORD = "reactions/<str:label>/"
@@ -22,7 +23,7 @@ _PARTS = {
 }
 
 urlpatterns = [
-    path("", access.Documentation.as_view(), name="api-docs"),
+    path("", description, name="api-docs"),
     path("schema/", access.Schema.as_view(), name="api-schema"),
     path("campaigns/", catalogue.Campaigns.as_view(), name="api-campaigns"),
     path("campaigns/<str:code>/", catalogue.OneCampaign.as_view(), name="api-campaign"),
