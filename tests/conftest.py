@@ -1,5 +1,6 @@
 """The people and the campaign that most tests need, and the database and folders all run in."""
 
+import hypothesis
 import pytest
 from django.contrib.auth import get_user_model
 
@@ -23,11 +24,18 @@ def pytest_collection_modifyitems(config, items):
     items[:] = [item for item in items if item not in slow]
 
 
+# How long an example takes says more about what else the machine is doing.
+hypothesis.settings.register_profile("untimed", deadline=None)
+hypothesis.settings.load_profile("untimed")
+
+
 def pytest_configure():
-    """Hash passwords cheaply: a test makes many people and guards no secret."""
+    """Leave out what costs time in every test and guards or serves nobody there."""
     from django.conf import settings
 
     settings.PASSWORD_HASHERS = ["django.contrib.auth.hashers.MD5PasswordHasher"]
+    # Look up static files when asked for, not all of them for every test client.
+    settings.WHITENOISE_AUTOREFRESH = True
 
 
 @pytest.fixture(scope="session")

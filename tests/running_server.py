@@ -20,7 +20,7 @@ from psycopg import sql
 from labbook.accounts.log_ins import kept_log_ins
 
 ROOT = Path(__file__).parents[1]
-_START_S = 90
+_START_S = 180
 _STOP_S = 15
 _WORKER = ("--app", "labbook.celery", "worker", "--pool", "threads", "--concurrency", "2")
 _OPEN_AT = re.compile(r"The book is open at (\S+)")
