@@ -12,7 +12,7 @@ from typing import Any
 
 from django.conf import global_settings, settings
 from django.contrib.auth.decorators import login_not_required
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.contrib.auth.views import redirect_to_login
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import render, resolve_url
@@ -28,12 +28,11 @@ def is_enhanced(request: HttpRequest) -> bool:
     return request.headers.get("HX-Request") == "true"
 
 
-def person_of(request: HttpRequest) -> AbstractBaseUser:
+def person_of(request: HttpRequest) -> User:
     """Return the person logged in; only for views behind ``member_page``."""
-    user = request.user
-    if not isinstance(user, AbstractBaseUser):
+    if not request.user.is_authenticated:
         raise NotAllowed("Log in first.")
-    return user
+    return request.user
 
 
 def member_page(view: View) -> View:
@@ -66,7 +65,7 @@ def log_in_address() -> str:
     return resolve_url(settings.LOGIN_URL if is_set else "reactions:login")
 
 
-def campaign_of(user: AbstractBaseUser, code: str) -> Campaign:
+def campaign_of(user: User, code: str) -> Campaign:
     """Return a campaign that ``user`` may see; 404 for any other, whether or not there is one."""
     campaign = Campaign.objects.visible_to(user).filter(code=code).first()
     if campaign is None:
@@ -74,7 +73,7 @@ def campaign_of(user: AbstractBaseUser, code: str) -> Campaign:
     return campaign
 
 
-def reaction_of(user: AbstractBaseUser, code: str, number: int) -> Reaction:
+def reaction_of(user: User, code: str, number: int) -> Reaction:
     """Return a reaction that ``user`` may see; 404 for any other."""
     reaction = (
         Reaction.objects.visible_to(user)

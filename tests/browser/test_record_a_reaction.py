@@ -1,4 +1,4 @@
-"""Recording a reaction at the bench: weigh, run, read out, isolate, sign; typed as a person does."""
+"""Recording a reaction at the bench, from the balance to the signature, as a person types it."""
 
 import re
 

@@ -25,7 +25,9 @@ def addresses(demo_server):
     }
 
 
-@pytest.mark.parametrize("name", ["planned", "completed", "signed", "print", "campaigns", "campaign"])
+@pytest.mark.parametrize(
+    "name", ["planned", "completed", "signed", "print", "campaigns", "campaign"]
+)
 @pytest.mark.parametrize(("width", "colour_scheme"), _SCREENS)
 def test_a_page_is_accessible_and_never_scrolls_sideways(
     logged_in_page, accessibility_faults, addresses, name, width, colour_scheme

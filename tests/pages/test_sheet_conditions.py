@@ -107,3 +107,16 @@ def test_an_enhanced_error_answers_with_the_part_alone(
     assert "hx-swap-oob" not in page
     assert 'value="soon"' in page
     assert "data-unsaved" in page
+
+
+def test_a_volume_that_cannot_dissolve_the_cage_is_said(
+    signed_in, author, planned, sheet_of, typed_conditions
+):
+    # C60 in toluene at 25 °C: 2.8 mg/mL; from memory, after Ruoff, Tse, Malhotra, Lorents,
+    # J. Phys. Chem. 1993, 97, 3379. So 500 mg don't dissolve in 50 mL and do in 250 mL.
+    client = signed_in(author)
+    assert "dissolves the cage at 25 °C" in client.get(sheet_of(planned)).content.decode()
+    page = signed_in(author, enhanced=True).post(
+        sheet_of(planned, "conditions"), typed_conditions(solvent_volume_ml="50 mL")
+    )
+    assert "50 mL of toluene dissolves 140 mg of C60" in page.content.decode()

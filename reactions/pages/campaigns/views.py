@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from django.contrib import messages
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.core.paginator import Paginator
 from django.db.models import Count, Max, Q, QuerySet
 from django.http import HttpRequest, HttpResponse
@@ -56,7 +56,7 @@ def campaign(request: HttpRequest, code: str) -> HttpResponse:
 
 def show_campaign(
     request: HttpRequest,
-    user: AbstractBaseUser,
+    user: User,
     campaign: Campaign,
     member_form: MemberForm,
     refusal: str = "",

@@ -6,8 +6,8 @@ from django import forms
 from django.http import QueryDict
 
 from reactions.pages.sheet.fields import mass_field
+from reactions.pages.sheet.forms import SheetForm, checked
 from reactions.pages.sheet.record import Record
-from reactions.pages.sheet.run_forms import SheetForm, checked
 from reactions.services.inputs import ConclusionInput
 from reactions.services.revising import Edit
 from reactions.services.run import amend_conclusion

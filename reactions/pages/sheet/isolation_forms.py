@@ -12,9 +12,9 @@ from reactions.errors import WHOLE, FieldErrors
 from reactions.models import Fraction, IsolationMethod, IsolationStep
 from reactions.models.constraints import HIGHEST_LEVEL
 from reactions.pages.sheet.fields import mass_field, share_field, volume_field
+from reactions.pages.sheet.forms import SheetForm, checked
 from reactions.pages.sheet.record import Record
 from reactions.pages.sheet.rows import next_place, places_in
-from reactions.pages.sheet.run_forms import SheetForm, checked
 from reactions.services.inputs import FractionInput, IsolationStepInput
 from reactions.services.revising import Edit
 from reactions.services.run import amend_isolation

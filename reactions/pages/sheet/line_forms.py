@@ -17,8 +17,8 @@ from reactions.pages.sheet.fields import (
     molarity_field,
     share_field,
 )
+from reactions.pages.sheet.forms import SheetForm
 from reactions.pages.sheet.line_details import details_of
-from reactions.pages.sheet.run_forms import SheetForm
 
 # Where an objection of the service goes whose field has another name in the form.
 _PLACES = {

@@ -14,8 +14,8 @@ from reactions.models import ReadingMethod
 from reactions.models.constraints import HIGHEST_LEVEL
 from reactions.pages.drawing.levels import level_name
 from reactions.pages.sheet.fields import duration_field
+from reactions.pages.sheet.forms import SheetForm, checked
 from reactions.pages.sheet.record import Record
-from reactions.pages.sheet.run_forms import SheetForm, checked
 from reactions.services.inputs import ReadingInput
 from reactions.services.revising import Edit
 from reactions.services.run import add_reading

@@ -5,12 +5,14 @@ from __future__ import annotations
 from dataclasses import dataclass
 from functools import cached_property
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.utils.safestring import SafeString
 
+from reactions.chemistry.amounts import DEFAULT_MARGIN
 from reactions.chemistry.cautions import CautionSheet
 from reactions.chemistry.families import Family, UnknownFamilyError
 from reactions.chemistry.mass_balance import MassBalance
+from reactions.chemistry.solvent_volume import VolumeAdvice, advise_volume
 from reactions.chemistry.structures import StructureError
 from reactions.models import (
     Component,
@@ -81,7 +83,7 @@ _MOVES = {
 class Record:
     """One reaction with all that its sheet shows, for one person; read from the database once."""
 
-    def __init__(self, reaction: Reaction, user: AbstractBaseUser) -> None:
+    def __init__(self, reaction: Reaction, user: User) -> None:
         self.reaction = reaction
         self.user = user
 
@@ -203,6 +205,16 @@ class Record:
     def cautions(self) -> CautionSheet:
         """Return the cautions of what is on the sheet."""
         return cautions_of(self.reaction, self.components, self.family)
+
+    @cached_property
+    def volume_advice(self) -> VolumeAdvice | None:
+        """Return whether the solvent dissolves the cage; None without cage or solvent."""
+        cage, reaction = self.cage_line, self.reaction
+        mass_mg = (cage.actual_mass_mg or cage.planned_mass_mg) if cage else None
+        if not mass_mg or not reaction.solvent:
+            return None
+        chosen_ml = reaction.solvent_volume_ml
+        return advise_volume(reaction.cage, mass_mg, reaction.solvent, chosen_ml, DEFAULT_MARGIN)
 
     @property
     def objective(self) -> str:

@@ -2,34 +2,21 @@
 
 from __future__ import annotations
 
-from typing import Any
-
 from django import forms
 from django.http import QueryDict
-from pydantic import ValidationError
 
 from reactions.chemistry.solvents import solvents
-from reactions.errors import FieldErrors, field_errors
 from reactions.models import AdditionMode, Atmosphere, Light, ObservationKind
-from reactions.pages.form_errors import add_errors
 from reactions.pages.sheet.fields import (
-    KeepsStored,
     duration_field,
     temperature_field,
     volume_field,
 )
+from reactions.pages.sheet.forms import SheetForm, checked
 from reactions.pages.sheet.record import Record
 from reactions.services.inputs import ConditionsInput, ObservationInput
 from reactions.services.revising import Edit
 from reactions.services.run import add_observation, amend_conditions
-
-
-class SheetForm(KeepsStored):
-    """A form of the sheet that knows where to put what a service objects to."""
-
-    def place_errors(self, error: FieldErrors) -> None:
-        """Put what a service objected to at the fields."""
-        add_errors(self, error)
 
 
 class ConditionsForm(SheetForm):
@@ -86,11 +73,3 @@ def observation_form(record: Record, data: QueryDict | None) -> ObservationForm:
 def store_observation(edit: Edit, form: ObservationForm) -> None:
     """Add the line as typed."""
     add_observation(edit, checked(ObservationInput, form.cleaned_data))
-
-
-def checked(kind: Any, values: dict[str, Any]) -> Any:
-    """Return ``values`` as a service's input; raises ``FieldErrors``."""
-    try:
-        return kind(**values)
-    except ValidationError as error:
-        raise field_errors(error) from error

@@ -19,7 +19,7 @@ from reactions.pages.sheet.record import Record
 from reactions.pages.sheet.sections import SectionKind, ShownSection, fresh
 
 # What is computed from the record and drawn anew beside a part that was stored.
-_FOLLOWING = ("head", "cautions", "plan", "found", "standing", "history")
+_FOLLOWING = ("head", "cautions", "plan", "volume_advice", "found", "standing", "history")
 
 
 @dataclass

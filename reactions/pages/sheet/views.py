@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import redirect, render
 from django.views.decorators.http import require_http_methods, require_POST, require_safe
@@ -77,7 +77,7 @@ def remove_row(request: HttpRequest, code: str, number: int, name: str, pk: int)
     return show_rows(request, again, fresh(kind, again), status=200)
 
 
-def _try_to_store(user: AbstractBaseUser, record: Record, shown: ShownSection) -> int:
+def _try_to_store(user: User, record: Record, shown: ShownSection) -> int:
     """Store what was typed; return 200, or the status of what ``shown`` says stood in the way."""
     if not shown.form.is_valid():
         return 422
@@ -96,7 +96,7 @@ def _try_to_store(user: AbstractBaseUser, record: Record, shown: ShownSection) -
     return 200
 
 
-def _again(user: AbstractBaseUser, record: Record) -> Record:
+def _again(user: User, record: Record) -> Record:
     """Return the record as it now stands in the database."""
     reaction = record.reaction
     return Record(reaction_of(user, reaction.campaign.code, reaction.number), user)

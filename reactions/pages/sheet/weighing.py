@@ -10,10 +10,10 @@ from django.http import QueryDict
 from reactions.errors import WHOLE, FieldErrors
 from reactions.models import Component, ComponentRole, Reaction
 from reactions.pages.sheet.charges import Charge
+from reactions.pages.sheet.forms import checked
 from reactions.pages.sheet.line_forms import LineForm
 from reactions.pages.sheet.record import Record
 from reactions.pages.sheet.rows import next_place, places_in
-from reactions.pages.sheet.run_forms import checked
 from reactions.services.inputs import LineInput
 from reactions.services.lines import amend_lines, lines_of, work_out_lines
 from reactions.services.revising import Edit
