@@ -46,12 +46,12 @@ class FamilyForm(forms.Form):
     attaches = _text("What one addition attaches")
     level_counts = _text("What counts as one level")
     attachment_points = number_field(
-        1, 2, example="2", whole=True, label="Cage atoms that one addition uses"
+        1, 2, example="e.g. 2", whole=True, label="Cage atoms that one addition uses"
     )
-    sites_c60 = number_field(1, 200, example="30", whole=True, label="Sites on C60")
-    sites_c70 = number_field(1, 200, example="30", whole=True, label="Sites on C70")
-    highest_c60 = number_field(1, 200, example="6", whole=True, label="Highest level known, C60")
-    highest_c70 = number_field(1, 200, example="6", whole=True, label="Highest level known, C70")
+    sites_c60 = number_field(1, 200, example="e.g. 30", whole=True, label="Sites on C60")
+    sites_c70 = number_field(1, 200, example="e.g. 30", whole=True, label="Sites on C70")
+    highest_c60 = number_field(1, 200, example="", whole=True, label="Highest level known, C60")
+    highest_c70 = number_field(1, 200, example="", whole=True, label="Highest level known, C70")
     usual_solvents = _text(
         "Usual solvents", required=False, help_text="The usual one first; a semicolon between."
     )
@@ -108,7 +108,7 @@ class RoleForm(forms.Form):
     role = forms.ChoiceField(choices=_ROLES, required=False, label="Role")
     name = forms.CharField(required=False, max_length=160, label="Substance, or what kind")
     equivalents_per_addition = number_field(
-        0.0001, 1e4, example="1.5", label="Equivalents per addition"
+        0.0001, 1e4, example="", label="Equivalents per addition"
     )
 
 
@@ -117,7 +117,7 @@ class ByProductForm(forms.Form):
 
     name = forms.CharField(required=False, max_length=160, label="By-product")
     smiles = forms.CharField(required=False, max_length=400, label="SMILES")
-    per_addition = number_field(0.0001, 100, example="1", label="Per addition")
+    per_addition = number_field(0.0001, 100, example="", label="Per addition")
     is_gas = forms.BooleanField(required=False, label="A gas")
 
 

@@ -4,6 +4,7 @@
 
 const NEAR_PX = 26;
 const BOND_PX = 36;
+const NO_ELEMENT = 0; // drawn as “?”, written as *
 
 const plainMarks = (smiles) => smiles.replaceAll(/\[(R\d+|\?|\*:\d+)\]/g, "*");
 
@@ -43,11 +44,25 @@ class StructureEditor {
     if (!opens || this.editor) return;
     this.chemistry = await import("../parts/openchemlib.js");
     this.editor = new this.chemistry.CanvasEditor(this.canvas);
+    this.fitForFingers();
     this.nameForReaders();
     this.draw();
     this.editor.setOnChangeListener((event) => {
       if (event.type === "molecule" && event.isUserEvent) this.write();
     });
+  }
+
+  // The editor's tools are small: larger where a finger or a glove presses them.
+  fitForFingers() {
+    const host = this.canvas.firstElementChild;
+    const tools = host.shadowRoot.querySelector("canvas");
+    const scale = window.matchMedia("(pointer: coarse)").matches ? 1.5 : 1;
+    const { height } = tools.getBoundingClientRect();
+    this.canvas.style.height = `${Math.ceil(height * scale) + 2}px`;
+    host.style.width = host.style.height = `${100 / scale}%`;
+    host.style.transform = `scale(${scale})`;
+    host.style.transformOrigin = "0 0";
+    host.shadowRoot.querySelector("div").style.minWidth = "0";
   }
 
   nameForReaders() {
@@ -110,15 +125,14 @@ class StructureEditor {
       return;
     }
     this.bondToCage(molecule, atom, scale);
-    this.say("Attached. Press another atom, or the same again for a second bond to the cage.");
+    this.say("Attached: “?” is the cage. Press another atom, or the same again for a second bond to it.");
   }
 
   bondToCage(molecule, atom, scale) {
-    const any = this.chemistry.Molecule.fromSmiles("*").getAtomicNo(0);
     const [x, y] = [molecule.getAtomX(atom), molecule.getAtomY(atom)];
     const length = molecule.getAllBonds() ? molecule.getAverageBondLength() : BOND_PX * scale;
     const angle = widestGap(molecule, atom);
-    const point = molecule.addAtom(any);
+    const point = molecule.addAtom(NO_ELEMENT);
     molecule.setAtomX(point, x + length * Math.cos(angle));
     molecule.setAtomY(point, y + length * Math.sin(angle));
     molecule.addBond(atom, point, this.chemistry.Molecule.cBondTypeSingle);
