@@ -8,7 +8,6 @@ from django.utils.decorators import method_decorator
 from drf_spectacular.utils import extend_schema
 from drf_spectacular.views import SpectacularAPIView
 from pydantic import Field
-from rest_framework.authentication import SessionAuthentication, TokenAuthentication
 from rest_framework.permissions import AllowAny, IsAuthenticated
 from rest_framework.request import Request
 from rest_framework.response import Response
@@ -75,4 +74,4 @@ class Schema(SpectacularAPIView):
     custom_settings = {"OAS_VERSION": "3.1.0"}
 
     permission_classes = [IsAuthenticated]
-    authentication_classes = [SessionAuthentication, TokenAuthentication]
+    get_authenticators = Endpoint.get_authenticators

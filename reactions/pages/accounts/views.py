@@ -18,6 +18,7 @@ _UPTAKES = (0.15, 0.5, 1.0, 1.6, 2.3, 3.1, 4.0, 5.0)
 class LogIn(views.LoginView):
     """Ask for name and password; a person already logged in goes straight on."""
 
+    http_method_names = ["get", "head", "post", "options"]
     template_name = "reactions/accounts/log_in.html"
     form_class = LogInForm
     redirect_authenticated_user = True
