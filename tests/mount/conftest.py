@@ -1,5 +1,6 @@
 """A wheel of the app, mounted in a site that ``startproject`` has just made."""
 
+import json
 import os
 import re
 import socket
@@ -17,16 +18,16 @@ import pytest
 
 ROOT = Path(__file__).parents[2]
 NAME, PASSWORD = "owner", "violet-crystals-91"
-# What README tells a site to write.
-SETTINGS_LINES = """
-INSTALLED_APPS += ["reactions", "rest_framework", "rest_framework.authtoken", "drf_spectacular"]
-LOGIN_URL = "reactions:login"
-"""
-URL_LINES = """
-from django.urls import include
-urlpatterns += [path("lab/", include("reactions.urls"))]
-"""
 _CSRF_FIELD = re.compile(r'name="csrfmiddlewaretoken" value="([^"]+)"')
+_PYTHON_BLOCK = re.compile(r"^```python\n(.*?)^```$", re.MULTILINE | re.DOTALL)
+
+
+def _lines_to_write():
+    """Return what README tells a site to add to its settings and to its addresses."""
+    readme = (ROOT / "README.md").read_text(encoding="utf-8")
+    chapter = readme.partition("## Mount it in another site")[2].partition("\n## ")[0]
+    settings, addresses = _PYTHON_BLOCK.findall(chapter)
+    return settings, addresses
 
 
 def _run(*words, **options):
@@ -50,9 +51,10 @@ def wheel(tmp_path_factory):
 def clean_python(wheel, tmp_path_factory):
     """The Python of a virtual environment that holds the wheel and what the lock names."""
     folder = tmp_path_factory.mktemp("clean")
-    _run("uv", "venv", "--quiet", "--python", sys.executable, folder / "venv")
+    uv = Path(sys.executable).with_name("uv")
+    _run(uv, "venv", "--quiet", "--python", sys.executable, folder / "venv")
     python = folder / "venv/bin/python"
-    install = ["uv", "pip", "install", "--quiet", "--no-deps", "--python", python]
+    install = [uv, "pip", "install", "--quiet", "--no-deps", "--python", python]
     _run(*install, "--require-hashes", "--requirement", ROOT / "requirements.lock")
     _run(*install, wheel)
     return python
@@ -79,6 +81,17 @@ class Browserless:
         body = urllib.parse.urlencode({**fields, "csrfmiddlewaretoken": token}).encode()
         address = urllib.parse.urljoin(self.address, path)
         return self._open(urllib.request.Request(address, body, {"Referer": address}))
+
+    def send(self, method, path, content):
+        """Send JSON as a script in the page would; return the JSON of the answer."""
+        token = next(cookie.value for cookie in self._cookies if cookie.name == "csrftoken")
+        request = urllib.request.Request(
+            urllib.parse.urljoin(self.address, path),
+            json.dumps(content).encode(),
+            {"Content-Type": "application/json", "X-CSRFToken": token},
+            method=method,
+        )
+        return json.loads(self._open(request)[1])
 
     def _open(self, request):
         try:
@@ -139,10 +152,12 @@ def mounted_site(clean_python, tmp_path_factory):
     """A fresh site with the app mounted by two settings lines and one address line, served."""
     folder = tmp_path_factory.mktemp("site")
     _run(clean_python, "-m", "django", "startproject", "fresh", folder, env=_environment())
+    settings, addresses = _lines_to_write()
+    assert (settings.count("\n"), addresses.count("\n")) == (2, 1)
     with (folder / "fresh/settings.py").open("a") as file:
-        file.write(SETTINGS_LINES)
+        file.write(settings)
     with (folder / "fresh/urls.py").open("a") as file:
-        file.write(URL_LINES)
+        file.write(f"from django.urls import include\nurlpatterns += [\n{addresses}]\n")
     _manage(clean_python, folder, "migrate")
     _manage(
         clean_python, folder, "createsuperuser", "--noinput",
@@ -176,5 +191,5 @@ def owner(visitor):
     """The site's superuser, logged in over HTTP."""
     address, _ = visitor.get("lab/")
     arrived, page = visitor.post(address, {"username": NAME, "password": PASSWORD})
-    assert "log" not in urllib.parse.urlsplit(arrived).path.rpartition("/lab/")[2], page[:2000]
+    assert arrived == f"{visitor.address}lab/", page[:2000]
     return visitor
