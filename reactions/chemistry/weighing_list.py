@@ -4,7 +4,15 @@ from __future__ import annotations
 
 from typing import Annotated
 
-from pydantic import BaseModel, ConfigDict, Field, model_validator
+from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, model_validator
+
+
+def _no_percent(value: object) -> object:
+    """Refuse a share that was meant in percent, before a limit refuses it with less to say."""
+    if isinstance(value, (int, float)) and 1 < value <= 100:
+        raise ValueError(f"{value:g} is more than 1; write {value / 100:g} for {value:g} %.")
+    return value
+
 
 DEFAULT_MARGIN = 1.25
 LARGEST = 1e9  # of any mass (mg), volume (mL) or amount (mmol)
@@ -15,7 +23,7 @@ _Needed = Annotated[float, Field(gt=0, le=1e6, allow_inf_nan=False)]
 _MolarMass = Annotated[float, Field(gt=0, le=1e6, allow_inf_nan=False)]
 _Density = Annotated[float, Field(gt=0, le=30, allow_inf_nan=False)]
 _Molarity = Annotated[float, Field(gt=0, le=100, allow_inf_nan=False)]
-_Share = Annotated[float, Field(gt=0, le=1, allow_inf_nan=False)]
+_Share = Annotated[float, BeforeValidator(_no_percent), Field(gt=0, le=1, allow_inf_nan=False)]
 _Margin = Annotated[float, Field(ge=1, le=100, allow_inf_nan=False)]
 _Name = Annotated[str, Field(min_length=1, max_length=200)]
 _Smiles = Annotated[str, Field(max_length=2000)]

@@ -327,13 +327,14 @@ def test_a_refusal_travels_between_processes():
 @pytest.mark.parametrize(
     ("lines", "fields", "field", "part"),
     [
-        ([malonate(purity=97)], {}, "lines.0.purity", "97 is above 1"),
+        ([malonate(purity=97)], {}, "lines.0.purity", "97 is more than 1; write 0.97 for 97 %."),
         ([malonate(purity=0)], {}, "lines.0.purity", "0 is not above 0"),
         ([malonate(equivalents=-1)], {}, "lines.0.equivalents", "-1 is below 0"),
         ([malonate(equivalents=float("nan"))], {}, "lines.0.equivalents", "finite"),
         ([], {"cage_mass_mg": 0}, "cage_mass_mg", "0 is not above 0"),
         ([], {"cage_mass_mg": float("inf")}, "cage_mass_mg", "finite"),
-        ([], {"cage_purity": 1.5}, "cage_purity", "1.5 is above 1"),
+        ([], {"cage_purity": 1.5}, "cage_purity", "1.5 is more than 1"),
+        ([], {"cage_purity": 150}, "cage_purity", "150 is above 1"),
         ([], {"cage_mass_mg": "250 mg"}, "cage_mass_mg", "“250 mg” is not a number"),
         ([], {"solubility_margin": 0.5}, "solubility_margin", "0.5 is below 1"),
         ([{"name": ""}], {}, "lines.0.name", "empty"),
