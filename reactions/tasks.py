@@ -10,7 +10,7 @@ from reactions.models import HistoryImport, ImportState
 from reactions.services.history.importing import run_import, take_up_interrupted
 
 
-@shared_task(name="reactions.import_history")
+@shared_task(name="reactions.import_history")  # type: ignore[untyped-decorator]
 def import_history(job_id: int) -> None:
     """Check and store a queued import."""
     run_import(job_id)

@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.db.models import Count, Exists, F, OuterRef, Q, QuerySet
 
 from reactions.chemistry.families import Family
@@ -94,7 +94,7 @@ class Answer:
     families: Mapping[str, Family]
 
 
-def find(query: SearchQuery, user: AbstractBaseUser) -> QuerySet[Reaction]:
+def find(query: SearchQuery, user: User) -> QuerySet[Reaction]:
     """Return the reactions that ``user`` may see and that the query asks for, in its order.
 
     Raises ``FieldErrors`` for a family or campaign that isn't there and for a structure that can't
@@ -104,7 +104,7 @@ def find(query: SearchQuery, user: AbstractBaseUser) -> QuerySet[Reaction]:
     return _in_order(_in_families(_in_any_family(query, user), query, families), query)
 
 
-def family_counts(query: SearchQuery, user: AbstractBaseUser) -> tuple[BranchCount, ...]:
+def family_counts(query: SearchQuery, user: User) -> tuple[BranchCount, ...]:
     """Return the family tree with the counts of what the query finds in each family.
 
     It has the families of all that ``user`` may see. Families asked for do not narrow the counts,
@@ -113,7 +113,7 @@ def family_counts(query: SearchQuery, user: AbstractBaseUser) -> tuple[BranchCou
     return _tree(_in_any_family(query, user), query, known_families(), user)
 
 
-def answer(query: SearchQuery, user: AbstractBaseUser) -> Answer:
+def answer(query: SearchQuery, user: User) -> Answer:
     """Return the hits and the family tree together, searching structures once.
 
     Raises ``FieldErrors`` as ``find`` does.
@@ -124,7 +124,7 @@ def answer(query: SearchQuery, user: AbstractBaseUser) -> Answer:
     return Answer(query, hits, _tree(found, query, families, user), families)
 
 
-def _in_any_family(query: SearchQuery, user: AbstractBaseUser) -> ReactionQuerySet:
+def _in_any_family(query: SearchQuery, user: User) -> ReactionQuerySet:
     found = Reaction.objects.visible_to(user)
     if query.campaign:
         if not Campaign.objects.visible_to(user).filter(code=query.campaign).exists():
@@ -220,7 +220,7 @@ def _tree(
     found: ReactionQuerySet,
     query: SearchQuery,
     families: Mapping[str, Family],
-    user: AbstractBaseUser,
+    user: User,
 ) -> tuple[BranchCount, ...]:
     counts: dict[str, int] = dict(
         found.order_by().values_list("family_key").annotate(count=Count("pk"))

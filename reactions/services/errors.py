@@ -36,8 +36,8 @@ class EditConflict(ValueError):
         self.version = version
         names = ", ".join(dict.fromkeys(str(revision.made_by) for revision in self.revisions))
         super().__init__(
-            f"{names} changed this section since you opened it. Nothing of yours is stored yet: "
-            "compare below, then save again to put yours in its place."
+            f"{names} changed this since you opened it. Nothing of yours is stored yet: compare "
+            "below, then save again if you still mean it."
         )
 
     @property

@@ -78,7 +78,7 @@ def revising(edit: Edit, section: Section, action: str) -> Iterator[tuple[Reacti
         require_role(edit.user, reaction.campaign, Role.AUTHOR)
         if reaction.state == State.SIGNED:
             raise RecordClosed(f"{reaction.label} is signed and takes no change.")
-        _refuse_to_run_over(edit, reaction, section)
+        _refuse_to_run_over(edit, reaction, None if section == Section.STATE else section)
         changes = ChangeList()
         yield reaction, changes
         if not changes.rows:
@@ -97,14 +97,16 @@ def revising(edit: Edit, section: Section, action: str) -> Iterator[tuple[Reacti
         )
 
 
-def _refuse_to_run_over(edit: Edit, reaction: Reaction, section: Section) -> None:
-    """Raise ``EditConflict`` when others changed the same section since ``edit.seen_version``."""
+def _refuse_to_run_over(edit: Edit, reaction: Reaction, section: Section | None) -> None:
+    """Raise ``EditConflict`` when others changed the same section since ``edit.seen_version``.
+
+    Without a section any change counts: whoever moves or signs a record stands by all of it.
+    """
     if edit.seen_version is None or edit.seen_version >= reaction.version:
         return
-    meanwhile = list(
-        reaction.revisions.filter(number__gt=edit.seen_version, section=section).select_related(
-            "made_by"
-        )
-    )
+    newer = reaction.revisions.filter(number__gt=edit.seen_version)
+    if section is not None:
+        newer = newer.filter(section=section)
+    meanwhile = list(newer.select_related("made_by"))
     if meanwhile:
         raise EditConflict(meanwhile, reaction.version)

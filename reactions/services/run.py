@@ -5,11 +5,13 @@ from __future__ import annotations
 from collections.abc import Sequence
 from typing import Any
 
+from reactions.chemistry.quantity_text import format_fraction, format_mass, format_volume
 from reactions.errors import FieldErrors
 from reactions.models import (
     Fraction,
     IsolationStep,
     Observation,
+    Reaction,
     Reading,
     ReadingLevel,
     Section,
@@ -108,24 +110,36 @@ def remove_reading(edit: Edit, reading_id: int) -> None:
         row.delete()
 
 
-def _isolation_as_text(reaction: Any) -> list[str]:
+def _isolation_in_words(reaction: Reaction) -> list[str]:
     steps = IsolationStep.objects.filter(reaction=reaction).prefetch_related("fractions")
-    return [
-        f"{step}: {step.medium}, {step.solvent}, {step.loading_mg} mg, {step.volume_ml} mL; "
-        + "; ".join(
-            f"{row} level {row.level} purity {row.purity:g}"
-            + (" carried on" if row.is_carried_on else "")
-            for row in step.fractions.all()
-        )
-        + (f" ({step.note})" if step.note else "")
-        for step in steps
+    return [_step_in_words(step) for step in steps]
+
+
+def _step_in_words(step: IsolationStep) -> str:
+    parts = [
+        step.get_method_display(),
+        step.medium,
+        step.solvent,
+        "" if step.loading_mg is None else f"{format_mass(step.loading_mg)} loaded",
+        "" if step.volume_ml is None else format_volume(step.volume_ml),
+        step.note,
+        *(_fraction_in_words(fraction) for fraction in step.fractions.all()),
     ]
+    return f"{step.position}. " + ", ".join(part for part in parts if part)
+
+
+def _fraction_in_words(fraction: Fraction) -> str:
+    level = "not identified" if fraction.level is None else f"level {fraction.level}"
+    words = f"{fraction.name or 'fraction'} {format_mass(fraction.mass_mg)} {level}"
+    if fraction.purity < 1:
+        words += f" purity {format_fraction(fraction.purity)}"
+    return words + (" carried on" if fraction.is_carried_on else "")
 
 
 def amend_isolation(edit: Edit, steps: Sequence[IsolationStepInput]) -> None:
     """Put these steps and their fractions in place of those stored."""
     with revising(edit, Section.ISOLATION, "isolation amended") as (reaction, changes):
-        before = _isolation_as_text(reaction)
+        before = _isolation_in_words(reaction)
         reaction.isolation_steps.all().delete()
         for position, step in enumerate(steps, 1):
             values = dict(step)
@@ -135,4 +149,4 @@ def amend_isolation(edit: Edit, steps: Sequence[IsolationStepInput]) -> None:
                 Fraction(step=row, position=order, **dict(fraction))
                 for order, fraction in enumerate(fractions, 1)
             )
-        changes.note("isolation", before, _isolation_as_text(reaction))
+        changes.note("isolation", before, _isolation_in_words(reaction))

@@ -1,7 +1,7 @@
 import pytest
 
 from reactions.models import State
-from reactions.services.errors import NotAllowed, RecordClosed
+from reactions.services.errors import EditConflict, NotAllowed, RecordClosed
 from reactions.services.inputs import ConditionsInput
 from reactions.services.revising import Edit
 from reactions.services.run import amend_conditions
@@ -77,3 +77,14 @@ def test_the_digest_changes_with_the_record(reaction, edit):
     amend_conditions(edit, ConditionsInput(temperature_c=20))
     reaction.refresh_from_db()
     assert digest_of(reaction) != before
+
+
+def test_nobody_signs_what_they_have_not_seen(edit, author, reaction):
+    move(edit, State.RUNNING)
+    move(edit, State.COMPLETED)
+    reaction.refresh_from_db()
+    seen = reaction.version
+    amend_conditions(edit, ConditionsInput(temperature_c=20))
+    with pytest.raises(EditConflict):
+        sign(Edit(author, reaction.pk, seen))
+    assert sign(Edit(author, reaction.pk, seen + 1)).signed_by == author
