@@ -26,17 +26,19 @@ class NeedsConfirmation(ValueError):
 
 
 class EditConflict(ValueError):
-    """Somebody else changed the same section since this person opened it.
+    """Somebody else changed the same section, or the record to be signed, since it was opened.
 
     ``revisions`` are the changes made meanwhile, oldest first; nothing was stored.
     """
 
-    def __init__(self, revisions: Sequence[Revision], version: int) -> None:
+    def __init__(
+        self, revisions: Sequence[Revision], version: int, what: str = "this section"
+    ) -> None:
         self.revisions = list(revisions)
         self.version = version
         names = ", ".join(dict.fromkeys(str(revision.made_by) for revision in self.revisions))
         super().__init__(
-            f"{names} changed this since you opened it. Nothing of yours is stored yet: compare "
+            f"{names} changed {what} since you opened it. Nothing of yours is stored yet: compare "
             "below, then save again if you still mean it."
         )
 

@@ -109,4 +109,5 @@ def _refuse_to_run_over(edit: Edit, reaction: Reaction, section: Section | None)
         newer = newer.filter(section=section)
     meanwhile = list(newer.select_related("made_by"))
     if meanwhile:
-        raise EditConflict(meanwhile, reaction.version)
+        what = "this section" if section else "this record"
+        raise EditConflict(meanwhile, reaction.version, what)
