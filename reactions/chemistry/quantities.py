@@ -148,11 +148,11 @@ def duration_min(text: str) -> float:
     parts = _DURATION_PART.findall(shown)
     if len(parts) < 2 or _DURATION_PART.sub("", shown).strip():
         return _of_kind(shown, "duration")
-    minutes = [_of_kind(f"{number} {unit}", "duration") for number, unit in parts]
+    minutes = [_exact(f"{number} {unit}", "duration") for number, unit in parts]
     lengths = [_FACTORS["duration"][_spelt(unit)] for _, unit in parts]
     if any(later >= earlier for earlier, later in pairwise(lengths)):
         raise QuantityError(f"“{shown}” is no one time; write it like 1 d 6 h 30 min.")
-    return math.fsum(minutes)
+    return _as_float(sum(minutes, Decimal(0)), shown)
 
 
 def fraction(text: str) -> float:
@@ -226,6 +226,11 @@ def _spelt(unit: str) -> str:
 
 
 def _of_kind(text: str, kind: Kind) -> float:
+    return _as_float(_exact(text, kind), text.strip())
+
+
+def _exact(text: str, kind: Kind) -> Decimal:
+    """Return the value in the record's unit, before it is rounded to a binary number."""
     shown = _checked(text)
     value, unit = _split(shown, _EXAMPLES[kind])
     first, second = _CHOICES[kind]
@@ -239,14 +244,14 @@ def _of_kind(text: str, kind: Kind) -> float:
         return _in_celsius(value, _spelt(unit), shown)
     if value < 0:
         raise QuantityError(f"{shown} is below 0; give 0 or more.")
-    return _as_float(value * factor, shown)
+    return value * factor
 
 
-def _in_celsius(value: Decimal, unit: str, shown: str) -> float:
+def _in_celsius(value: Decimal, unit: str, shown: str) -> Decimal:
     celsius = value - _ZERO_CELSIUS_K if unit == "K" else value
     if celsius < -_ZERO_CELSIUS_K:
         raise QuantityError(f"{shown} lies below absolute zero; give at least −273.15 °C.")
-    return _as_float(celsius, shown)
+    return celsius
 
 
 def _as_float(value: Decimal, shown: str) -> float:
