@@ -95,7 +95,8 @@ class SearchQuery(BaseModel):
         """
         data: dict[str, Any] = {}
         for name in parameters:
-            typed = [text for text in parameters.getlist(name) if text.strip()]
+            texts = (text.replace("\x00", "") for text in parameters.getlist(name))
+            typed = [text for text in texts if text.strip()]
             if typed and name not in BESIDE_THE_QUERY:
                 data[name] = typed if name == "family" else typed[-1]
         return cls.from_data(data)

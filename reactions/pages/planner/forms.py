@@ -11,7 +11,7 @@ from django.contrib.auth.models import AbstractBaseUser
 from reactions.chemistry.addends import usual_addends
 from reactions.chemistry.families import Family
 from reactions.models import AdditionMode, Atmosphere, Campaign, Light
-from reactions.pages.planner.numbers import factors_field, number_field
+from reactions.pages.planner.numbers import above_zero, factors_field, number_field
 from reactions.pages.sheet.fields import (
     duration_field,
     mass_field,
@@ -78,10 +78,10 @@ class PlannerForm(forms.Form):
     addend_name = _text(160)
 
     basis = forms.ChoiceField(choices=_BASES, required=False, widget=forms.RadioSelect)
-    cage_mass = mass_field(label="Mass of cage")
-    cage_purity = share_field(label="Purity of the cage")
-    product_mass = mass_field(label="Mass of product wanted")
-    expected_yield = share_field(label="Expected yield on the cage charged")
+    cage_mass = above_zero(mass_field(label="Mass of cage"))
+    cage_purity = above_zero(share_field(label="Purity of the cage"))
+    product_mass = above_zero(mass_field(label="Mass of product wanted"))
+    expected_yield = above_zero(share_field(label="Expected yield on the cage charged"))
 
     objective = forms.ChoiceField(choices=OBJECTIVES, required=False, widget=forms.RadioSelect)
     level = number_field(1, 70, example="1", whole=True, slide="1 12 1", label="Level")
@@ -95,10 +95,10 @@ class PlannerForm(forms.Form):
     model = forms.ChoiceField(choices=_MODELS, required=False, label="Model")
     sites = number_field(1, 200, example="30", whole=True, label="Sites on the cage")
     attenuation = factors_field("1", label="Attenuation, for each addition present")
-    reagent_efficiency = share_field(label="Reagent efficiency")
+    reagent_efficiency = above_zero(share_field(label="Reagent efficiency"))
 
     solvent = _text(80, list="solvents")
-    solvent_volume = volume_field(label="Solvent volume")
+    solvent_volume = above_zero(volume_field(label="Solvent volume"))
     temperature = temperature_field(label="Temperature")
     duration = duration_field(label="Time")
     atmosphere = forms.ChoiceField(choices=Atmosphere, required=False)

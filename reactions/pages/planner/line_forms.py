@@ -9,7 +9,7 @@ from django import forms
 
 from reactions.chemistry.substances import find_substance
 from reactions.models import Component, ComponentRole
-from reactions.pages.planner.numbers import number_field
+from reactions.pages.planner.numbers import above_zero, number_field
 from reactions.pages.sheet.fields import density_field, molarity_field, share_field
 
 MOST_LINES = 16
@@ -40,9 +40,9 @@ class PlannedLineForm(forms.Form):
     per = forms.ChoiceField(
         choices=((PER_REAGENT, "per reagent"), (PER_CAGE, "per cage")), required=False
     )
-    purity = share_field(label="Purity")
-    density = density_field(label="Density, of a liquid")
-    molarity = molarity_field(label="Strength, of a solution")
+    purity = above_zero(share_field(label="Purity"))
+    density = above_zero(density_field(label="Density, of a liquid"))
+    molarity = above_zero(molarity_field(label="Strength, of a solution"))
 
     component: Component | None = None
 

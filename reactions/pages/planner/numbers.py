@@ -40,6 +40,20 @@ def number_field(
     return field
 
 
+def above_zero(field: QuantityField) -> QuantityField:
+    """Return the field refusing 0, where nothing would follow from it."""
+    read = field.read
+
+    def read_above_zero(text: str) -> float:
+        value = read(text)
+        if value == 0:
+            raise ValueError(f"{text} is nothing; give more than 0.")
+        return value
+
+    field.read = read_above_zero
+    return field
+
+
 def factors_field(example: str, **kwargs: Any) -> QuantityField:
     """Return a field for one factor, or several with blanks or semicolons between them."""
     return QuantityField(_factors_reader(1000.0), show_number, example=example, **kwargs)

@@ -9,7 +9,7 @@ from django.http import QueryDict
 
 from reactions.chemistry.families import Family
 from reactions.pages.planner.line_forms import MOST_LINES, line_count
-from reactions.pages.planner.usual import UsualLine, refilled, usual_lines
+from reactions.pages.planner.usual import UsualLine, refilled, usual_conditions, usual_lines
 
 _AT_FIRST = {
     "cage": "C60",
@@ -57,7 +57,8 @@ def with_family(typed: Typed, families: Mapping[str, Family]) -> Typed:
     previous = data.get("filled_for", "")
     if key not in families:
         return Typed(data, typed.is_touched)
-    for name, value in refilled(data, families, key, previous).items():
+    old = usual_conditions(families[previous]) if previous in families else _AT_FIRST
+    for name, value in refilled(data.dict(), usual_conditions(families[key]), old).items():
         data[name] = value
     kept = _own_lines(data, families.get(previous))
     _put_lines(data, [*map(_fields_of, usual_lines(families[key])), *kept][:MOST_LINES])

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Any
 
 from reactions.chemistry.families import Family, FamilyRole
 from reactions.chemistry.quantity_text import (
@@ -89,10 +89,10 @@ def _ratio(role: FamilyRole, leading: FamilyRole) -> str:
     return show_number(own / (reference or 1.0)) if own else ""
 
 
-def refilled(data: Any, families: Any, key: str, previous_key: str) -> dict[str, str]:
-    """Return the fields to fill for a family: those blank, or as the previous family left them."""
-    new = usual_conditions(families[key])
-    old = usual_conditions(families[previous_key]) if previous_key in families else {}
+def refilled(
+    data: Mapping[str, str], new: Mapping[str, str], old: Mapping[str, str]
+) -> dict[str, str]:
+    """Return the fields to fill with what is ``new``: those blank, or still as of ``old``."""
     return {
         name: value
         for name, value in new.items()
