@@ -69,6 +69,8 @@ class EmbeddedWorker:
             hostname="embedded@localhost",
             pool="threads",
             concurrency=_THREADS,
+            # The event loop of Celery belongs to a process and cannot be started twice in one.
+            use_eventloop=False,
             without_heartbeat=True,
             without_mingle=True,
             without_gossip=True,

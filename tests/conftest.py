@@ -1,5 +1,7 @@
 """The people and the campaign that most tests need, and the database and folders all run in."""
 
+import os
+
 import hypothesis
 import pytest
 from django.contrib.auth import get_user_model
@@ -36,6 +38,9 @@ def pytest_configure():
     settings.PASSWORD_HASHERS = ["django.contrib.auth.hashers.MD5PasswordHasher"]
     # Look up static files when asked for, not all of them for every test client.
     settings.WHITENOISE_AUTOREFRESH = True
+    # Test processes share one Redis; each has a database of its own, so each needs its own queue.
+    process = os.environ.get("PYTEST_XDIST_WORKER", "only")
+    celery_application.conf.task_default_queue = f"tests-{process}"
 
 
 @pytest.fixture(scope="session")
