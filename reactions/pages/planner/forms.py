@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from typing import Any
 
 from django import forms
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 
 from reactions.chemistry.addends import usual_addends
 from reactions.chemistry.families import Family
@@ -106,7 +106,7 @@ class PlannerForm(forms.Form):
     addition_mode = forms.ChoiceField(choices=AdditionMode, required=False, label="Reagent added")
 
     def __init__(
-        self, data: Any, user: AbstractBaseUser, families: Mapping[str, Family], **kwargs: Any
+        self, data: Any, user: User, families: Mapping[str, Family], **kwargs: Any
     ) -> None:
         super().__init__(data, auto_id="plan_%s", **kwargs)
         self.families = families

@@ -47,7 +47,8 @@ class PlannedLineForm(forms.Form):
     component: Component | None = None
 
     def __init__(self, *args: Any, **kwargs: Any) -> None:
-        super().__init__(*args, auto_id="plan_%s", **kwargs)
+        kwargs.setdefault("auto_id", "plan_%s")
+        super().__init__(*args, **kwargs)
         for name, words in _WHEN_BLANK.items():
             self.fields[name].widget.attrs["placeholder"] = words
 

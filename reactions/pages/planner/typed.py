@@ -58,7 +58,8 @@ def with_family(typed: Typed, families: Mapping[str, Family]) -> Typed:
     if key not in families:
         return Typed(data, typed.is_touched)
     old = usual_conditions(families[previous]) if previous in families else _AT_FIRST
-    for name, value in refilled(data.dict(), usual_conditions(families[key]), old).items():
+    new = usual_conditions(families[key])
+    for name, value in refilled({name: data.get(name, "") for name in new}, new, old).items():
         data[name] = value
     kept = _own_lines(data, families.get(previous))
     _put_lines(data, [*map(_fields_of, usual_lines(families[key])), *kept][:MOST_LINES])

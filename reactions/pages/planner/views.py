@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from django.contrib import messages
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.http import HttpRequest, HttpResponse, QueryDict
 from django.shortcuts import redirect, render
 from django.urls import reverse
@@ -55,9 +55,7 @@ def planner(request: HttpRequest) -> HttpResponse:
     return _page(request, action, typed, form, lines, outcome)
 
 
-def _stored(
-    user: AbstractBaseUser, form: PlannerForm, lines: LineForms, outcome: Outcome
-) -> Reaction | None:
+def _stored(user: User, form: PlannerForm, lines: LineForms, outcome: Outcome) -> Reaction | None:
     """Store the plan; None when it can't be, with the reasons at the fields."""
     check_complete(form, outcome)
     if form.errors or any(line.errors for line in lines):

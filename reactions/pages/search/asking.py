@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from functools import cached_property
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 from django.http import QueryDict
 
 from reactions.errors import FieldErrors
@@ -20,7 +20,8 @@ from reactions.search.query import Answer, BranchCount, answer
 class Question:
     """A question as typed in an address; ``found`` is None when it can't be answered."""
 
-    user: AbstractBaseUser
+    user: User
+    parameters: QueryDict
     form: SearchForm
     query: SearchQuery
     found: Answer | None
@@ -30,7 +31,7 @@ class Question:
     def address(self) -> str:
         """Return the question as the parameters of an address: as understood, else as typed."""
         if self.found is None:
-            return self.form.data.urlencode()
+            return self.parameters.urlencode()
         return self.query.to_address()
 
     @cached_property
@@ -38,7 +39,7 @@ class Question:
         """Return the family tree with counts; of everything when the question can't be answered."""
         if self.found is not None:
             return self.found.tree
-        typed = tuple(self.form.data.getlist("family"))
+        typed = tuple(self.parameters.getlist("family"))
         everything = answer(SearchQuery(), self.user)
         known = {*everything.families, *(branch.name for branch in everything.tree)}
         asked = SearchQuery(family=tuple(name for name in typed if name in known))
@@ -55,12 +56,12 @@ class Question:
         return loosenings(self.query, self.found.families, self.user) if self.found else []
 
 
-def ask(parameters: QueryDict, user: AbstractBaseUser) -> Question:
+def ask(parameters: QueryDict, user: User) -> Question:
     """Read a question from an address and answer it; what is wrong stands at its field."""
     form = SearchForm(parameters, user)
     try:
         query = SearchQuery.from_address(parameters)
-        return Question(user, form, query, answer(query, user), None)
+        return Question(user, parameters, form, query, answer(query, user), None)
     except FieldErrors as error:
         add_errors(form, error)
-        return Question(user, form, SearchQuery(), None, error)
+        return Question(user, parameters, form, SearchQuery(), None, error)

@@ -44,7 +44,7 @@ class _Writer(Protocol):
 
 
 @require_safe
-@member_page
+@member_page  # type: ignore[arg-type]  # a streaming response has a class of its own
 def as_csv(request: HttpRequest) -> HttpResponse | StreamingHttpResponse:
     """Send all hits as CSV, one reaction to a row."""
     question = ask(request.GET, person_of(request))
@@ -54,7 +54,7 @@ def as_csv(request: HttpRequest) -> HttpResponse | StreamingHttpResponse:
 
 
 @require_safe
-@member_page
+@member_page  # type: ignore[arg-type]  # a streaming response has a class of its own
 def as_json(request: HttpRequest) -> HttpResponse | StreamingHttpResponse:
     """Send all hits as a JSON array, one object to a reaction."""
     question = ask(request.GET, person_of(request))

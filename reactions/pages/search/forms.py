@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from django import forms
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 
 from reactions.models import Campaign, Reaction, State
 from reactions.search.language import NEWEST_FIRST
@@ -97,7 +97,7 @@ class SearchForm(forms.Form):
         initial=NEWEST_FIRST,
     )  # fmt: skip
 
-    def __init__(self, data: Any, user: AbstractBaseUser) -> None:
+    def __init__(self, data: Any, user: User) -> None:
         super().__init__(data, auto_id="ask_%s")
         visible = Reaction.objects.visible_to(user)
         for name, label, any_of in (

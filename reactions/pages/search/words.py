@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 
 from reactions.chemistry.drawings import is_molfile, short
 from reactions.chemistry.families import Family
@@ -54,9 +54,7 @@ class Loosening:
     count: int
 
 
-def conditions(
-    query: SearchQuery, families: Mapping[str, Family], user: AbstractBaseUser
-) -> list[Condition]:
+def conditions(query: SearchQuery, families: Mapping[str, Family], user: User) -> list[Condition]:
     """Return each thing that the query asks, in the order of the form."""
     return [
         Condition(_in_words(name, value, families, user), rest.to_address())
@@ -64,9 +62,7 @@ def conditions(
     ]
 
 
-def loosenings(
-    query: SearchQuery, families: Mapping[str, Family], user: AbstractBaseUser
-) -> list[Loosening]:
+def loosenings(query: SearchQuery, families: Mapping[str, Family], user: User) -> list[Loosening]:
     """Return the conditions without which something is found, the most first."""
     found = [
         Loosening(
@@ -89,11 +85,11 @@ def _parts(query: SearchQuery) -> list[tuple[str, Any, SearchQuery]]:
     return parts
 
 
-def _in_words(name: str, value: Any, families: Mapping[str, Family], user: AbstractBaseUser) -> str:
+def _in_words(name: str, value: Any, families: Mapping[str, Family], user: User) -> str:
     return _WORDS[name].format(_shown(name, value, families, user))
 
 
-def _shown(name: str, value: Any, families: Mapping[str, Family], user: AbstractBaseUser) -> str:
+def _shown(name: str, value: Any, families: Mapping[str, Family], user: User) -> str:
     if name == "family":
         return " or ".join(families[key].name if key in families else key for key in value)
     if name == "substructure":
