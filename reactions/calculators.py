@@ -127,5 +127,5 @@ def compute(name: str, data: Any) -> dict[str, Any]:
         else:
             result = calculator.function(request)
     except ValueError as error:
-        raise FieldErrors.at(WHOLE, str(error)) from error
+        raise FieldErrors.at(getattr(error, "field", WHOLE), str(error)) from error
     return result.model_dump(mode="json")

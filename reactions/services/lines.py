@@ -10,7 +10,11 @@ from pydantic import ValidationError
 
 from reactions.bounded import run_bounded
 from reactions.chemistry.amounts import AmountsLine, AmountsRequest, AmountsResult, amounts
-from reactions.chemistry.line_amounts import LineSubstance, amount_from_mass_mmol
+from reactions.chemistry.line_amounts import (
+    AmountsError,
+    LineSubstance,
+    amount_from_mass_mmol,
+)
 from reactions.chemistry.masses import cage_molar_mass_g_per_mol, molar_mass_g_per_mol
 from reactions.chemistry.structures import StructureError
 from reactions.errors import FieldErrors, field_errors
@@ -190,9 +194,20 @@ def _amounts(
             )
         )
     except ValidationError as error:
-        raise field_errors(error) from error
-    except ValueError as error:
-        raise FieldErrors.at("lines", str(error)) from error
+        raise _at_own_places(field_errors(error), others) from error
+    except AmountsError as error:
+        raise _at_own_places(FieldErrors.at(error.field, str(error)), others) from error
+
+
+def _at_own_places(errors: FieldErrors, others: Sequence[Component]) -> FieldErrors:
+    """Return errors of the request's lines at their places in the whole list, cage included."""
+    messages: dict[str, list[str]] = {}
+    for path, texts in errors.messages.items():
+        parts = path.split(".")
+        if parts[0] == "lines" and len(parts) > 1 and parts[1].isdigit():
+            parts[1] = str(others[int(parts[1])].position)
+        messages.setdefault(".".join(parts), []).extend(texts)
+    return FieldErrors(messages)
 
 
 def _take_over(cage_line: Component, others: Sequence[Component], result: AmountsResult) -> None:

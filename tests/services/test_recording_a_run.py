@@ -1,6 +1,7 @@
 import pytest
 from pydantic import ValidationError
 
+from reactions.errors import FieldErrors
 from reactions.models import Revision
 from reactions.services.inputs import (
     ConclusionInput,
@@ -127,3 +128,15 @@ def test_the_time_line_keeps_what_was_taken_out(reaction, author):
     remove_observation(edit, row.pk)
     assert not reaction.observations.exists()
     assert Revision.objects.filter(reaction=reaction, section="time_line").count() == 2
+
+
+def test_equivalents_that_refer_in_a_circle_are_an_error_at_their_line(reaction, edit):
+    circle = [
+        line.model_copy(update={"equivalents_of": other})
+        for line, other in zip(
+            lines_of(reaction), ("", "DBU", "diethyl bromomalonate"), strict=True
+        )
+    ]
+    with pytest.raises(FieldErrors) as caught:
+        amend_lines(edit, circle)
+    assert list(caught.value.messages) == ["lines.1.equivalents_of"]
