@@ -27,7 +27,7 @@ OBJECTIVES = (
     ("band", "the most within a band"),
     ("equivalents", "equivalents of my own choice"),
 )
-_BASES = (("cage", "mass of cage"), ("product", "mass of product wanted"))
+_BASES = (("cage", "the cage at hand"), ("product", "the product wanted"))
 _MODELS = (
     ("sequential", "sequential: each addition slows the next"),
     ("independent_sites", "independent sites"),
