@@ -132,7 +132,7 @@ def test_a_family_that_is_no_longer_known_is_counted_and_found(
 
 
 def test_a_page_of_hits_takes_few_queries(book, author, asked, django_assert_max_num_queries):
-    with django_assert_max_num_queries(8):
+    with django_assert_max_num_queries(12):
         found = answer(asked("substructure=C1CCNC1&campaign=ACC"), author)
         assert [row.label for row in found.hits]
         assert found.tree
