@@ -79,7 +79,8 @@ def test_a_level_above_the_highest_known_is_stored_once_confirmed(press):
     assert response.status_code == 422
     assert "is_level_confirmed" in response.context["form"].errors
     assert not Reaction.objects.exists()
-    assert press(level="8", is_level_confirmed="on").status_code == 302
+    assert press(level="8", is_level_confirmed="7").status_code == 422
+    assert press(level="8", is_level_confirmed="8").status_code == 302
     assert Reaction.objects.get().target_level == 8
 
 

@@ -90,7 +90,8 @@ class PlannerForm(forms.Form):
     band_lowest = number_field(1, 70, example="2", whole=True, slide="1 12 1", label="From level")
     band_highest = number_field(1, 70, example="3", whole=True, slide="1 12 1", label="To level")
     equivalents = number_field(0.001, 1e4, example="1.2", slide="0.1 20 0.1", label="Equivalents")
-    is_level_confirmed = forms.BooleanField(required=False)
+    # The level that was confirmed, so that another one is asked about again.
+    is_level_confirmed = forms.CharField(required=False, max_length=10)
 
     model = forms.ChoiceField(choices=_MODELS, required=False, label="Model")
     sites = number_field(1, 200, example="30", whole=True, label="Sites on the cage")

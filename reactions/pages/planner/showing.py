@@ -11,7 +11,7 @@ from reactions.pages.drawing.levels import level_name
 from reactions.pages.planner.composing import Composed
 from reactions.pages.planner.forms import PlannerForm
 from reactions.pages.planner.outcome import Outcome
-from reactions.pages.planner.storing import suggested_title
+from reactions.pages.planner.storing import is_confirmed, suggested_title
 
 _LEAST_SHOWN = 0.0005
 
@@ -44,6 +44,7 @@ def shown(form: PlannerForm, outcome: Outcome) -> dict[str, Any]:
         "curve": draw_curve(composed.curve, mark),
         "curve_levels": _curve_levels(composed),
         "curve_rows": table_rows(composed.curve),
+        "is_confirmed": is_confirmed(form, outcome),
         "wanted_share": wanted,
         "wanted_name": _wanted_name(composed),
         "levels": _level_rows(composed, masses),

@@ -57,10 +57,16 @@ def plan_input(form: PlannerForm, outcome: Outcome) -> PlanInput:
             predicted_composition=composed.stored_composition if composed else None,
             lines=charged.inputs if charged else [],
             conditions=_conditions(cleaned, outcome),
-            is_level_confirmed=bool(cleaned.get("is_level_confirmed")),
+            is_level_confirmed=is_confirmed(form, outcome),
         )
     except ValidationError as error:
         raise at_form(field_errors(error)) from error
+
+
+def is_confirmed(form: PlannerForm, outcome: Outcome) -> bool:
+    """Return whether the very level that is wanted was confirmed."""
+    confirmed = form.cleaned_data.get("is_level_confirmed")
+    return outcome.composed is not None and confirmed == str(outcome.composed.band[1])
 
 
 def at_form(error: FieldErrors) -> FieldErrors:

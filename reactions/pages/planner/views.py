@@ -26,6 +26,7 @@ from reactions.services.planning import plan_reaction
 
 # Longer addresses are refused by some servers.
 _LONGEST_ADDRESS = 1800
+_OF_THE_PRESS = ("csrfmiddlewaretoken", "action", "is_level_confirmed")
 
 
 @require_http_methods(["GET", "HEAD", "POST"])
@@ -108,7 +109,7 @@ def _kept(data: QueryDict) -> str:
     """Return what was typed as parameters of an address, so that a reload keeps it."""
     kept = data.copy()
     for name in list(kept):
-        if name in ("csrfmiddlewaretoken", "action") or not "".join(kept.getlist(name)):
+        if name in _OF_THE_PRESS or not "".join(kept.getlist(name)):
             del kept[name]
     return kept.urlencode()
 
