@@ -16,17 +16,24 @@ from typing import Literal
 import numpy as np
 from scipy.optimize import brentq
 
-from reactions.chemistry.distribution.chain import BirthChain, FloatArray, rates
+from reactions.chemistry.distribution.chain import (
+    LONGEST_EXPOSURE,
+    BirthChain,
+    FloatArray,
+    rates,
+)
 from reactions.chemistry.distribution.closed_forms import binomial, poisson
 
 ModelName = Literal["independent_sites", "poisson", "sequential"]
-_FINEST = 4 * np.finfo(np.float64).eps
-_LONGEST_EXPOSURE = 1e300
+_FINEST = 4 * float(np.finfo(np.float64).eps)
 
 
 @dataclass(frozen=True)
 class CompositionModel:
-    """A composition model over levels 0 … ``sites``."""
+    """A composition model over levels 0 … ``sites`` (1 to 200).
+
+    ``attenuation`` belongs to the sequential model; see ``chain.rates``.
+    """
 
     name: ModelName
     sites: int
@@ -37,10 +44,8 @@ class CompositionModel:
         """Work out the rates of the chain."""
         if self.name == "poisson":
             chain_rates = np.append(np.ones(self.sites), 0.0)
-        elif self.name == "sequential":
-            chain_rates = rates(self.sites, self.attenuation)
         else:
-            chain_rates = rates(self.sites, 1.0)
+            chain_rates = rates(self.sites, self.attenuation if self.name == "sequential" else 1.0)
         object.__setattr__(self, "chain_rates", chain_rates)
 
     @property
@@ -48,12 +53,8 @@ class CompositionModel:
         """Return the highest level that can be reached: the first that is never left."""
         return int(np.argmax(self.chain_rates == 0.0))
 
-    @cached_property
-    def _chain(self) -> BirthChain:
-        return BirthChain(self.chain_rates)
-
     @property
-    def _has_equal_sites(self) -> bool:
+    def has_equal_sites(self) -> bool:
         """Tell whether the sites are independent, where the binomial law is exact."""
         factors = self.attenuation if isinstance(self.attenuation, tuple) else (self.attenuation,)
         return self.name == "independent_sites" or (
@@ -66,30 +67,30 @@ class CompositionModel:
         return row
 
     def compositions(self, exposures: FloatArray) -> FloatArray:
-        """Return one row x_0 … x_N for each exposure (0 to infinity)."""
+        """Return x_0 … x_N for each exposure (0 to infinity), shape (exposures, N+1)."""
         if self.name == "poisson":
-            return np.array([poisson(self.sites, exposure) for exposure in exposures])
-        if self._has_equal_sites:
-            return np.array(
-                [binomial(self.sites, _odds(exposure / self.sites)) for exposure in exposures]
-            )
+            return poisson(self.sites, exposures)
+        if self.has_equal_sites:
+            per_site = exposures / self.sites
+            return binomial(self.sites, -np.expm1(-per_site), np.exp(-per_site))
         rows = np.zeros((len(exposures), self.sites + 1))
-        endless = exposures > _LONGEST_EXPOSURE
+        endless = exposures > LONGEST_EXPOSURE
         rows[endless, self.highest_level] = 1.0
         if not endless.all():
-            rows[~endless] = self._chain.compositions(exposures[~endless])
+            reached = self._chain.compositions(exposures[~endless])
+            rows[~endless, : self.highest_level + 1] = reached
         return rows
 
     def uptake(self, exposure: float) -> float:
         """Return the mean number of additions per cage at one exposure."""
         if self.name == "poisson":
             return exposure
-        if self._has_equal_sites:
+        if self.has_equal_sites:
             return -self.sites * math.expm1(-exposure / self.sites)
         return mean_level(self.composition(exposure))
 
     def exposure_for_uptake(self, uptake: float) -> float:
-        """Return the exposure at which the uptake is reached.
+        """Return the exposure at which the uptake (0 or more) is reached.
 
         Infinity for an uptake of all levels that can be reached (for Poisson there is no such end).
         Raises ValueError for an uptake above that.
@@ -98,38 +99,69 @@ class CompositionModel:
             return uptake
         if uptake > self.highest_level:
             raise ValueError(
-                f"An uptake of {uptake:g} can't be reached: {self.highest_level} "
-                "is the most that these sites and this attenuation allow."
+                f"An uptake of {uptake:g} can't be reached; {self.highest_level} is the most that "
+                "these sites and this attenuation allow."
             )
         if uptake == self.highest_level:
             return math.inf
-        if self._has_equal_sites:
+        if self.has_equal_sites:
             return -self.sites * math.log1p(-uptake / self.sites)
-        return self._exposure_on_the_chain(uptake)
+        if uptake == 0:
+            return 0.0
+        return self._chain.crossing(lambda composition: uptake - mean_level(composition))
 
     def composition_at_uptake(self, uptake: float) -> FloatArray:
         """Return x_0 … x_N at one uptake; raises ValueError above what can be reached."""
-        if self._has_equal_sites and uptake <= self.sites:
-            left = self.sites - uptake
-            return binomial(self.sites, uptake / left if left > 0 else math.inf)
+        if self.has_equal_sites and uptake <= self.sites:
+            row: FloatArray = self._at_site_shares(np.array([uptake]))[0]
+            return row
         return self.composition(self.exposure_for_uptake(uptake))
 
-    def _exposure_on_the_chain(self, uptake: float) -> float:
-        if uptake == 0:
-            return 0.0
+    def along_uptakes(self, highest: float, count: int) -> tuple[FloatArray, FloatArray]:
+        """Return ``count`` uptakes from 0 to ``highest`` and their compositions.
+
+        Evenly spaced, but for the chain, where steps of exposure are taken: inverting the uptake
+        at every point would cost a search each, and the points lie on the same curve.
+        """
+        uptakes = np.linspace(0.0, highest, count)
+        if self.name == "poisson":
+            return uptakes, poisson(self.sites, uptakes)
+        if self.has_equal_sites:
+            return uptakes, self._at_site_shares(uptakes)
+        last = self.exposure_for_uptake(highest)
+        # Dense at the start, where the uptake rises fast; sparse along the tail of a slow step.
+        exposures = np.expm1(np.linspace(0.0, math.log1p(last), count))
+        exposures[-1] = last
+        compositions = self.compositions(exposures)
+        return compositions @ np.arange(self.sites + 1.0), compositions
+
+    def crossing(self, function: Callable[[FloatArray], float]) -> float:
+        """Return the exposure at which ``function`` of the composition turns negative.
+
+        It must be positive at first, and once negative stay so. Infinity where it never turns.
+        """
+        if not (self.has_equal_sites or self.name == "poisson"):
+            return self._chain.crossing(function)
+
+        def at(exposure: float) -> float:
+            return function(self.composition(exposure))
+
         upper = 1.0
-        while self.uptake(upper) < uptake:
-            upper *= 2.0
-            if upper > _LONGEST_EXPOSURE:
+        while at(upper) > 0:
+            upper *= 2
+            if upper > LONGEST_EXPOSURE:
                 return math.inf
-        while self.uptake(upper / 2) >= uptake and upper > 1e-300:
-            upper /= 2.0
-        return solve(lambda exposure: self.uptake(exposure) - uptake, upper / 2, upper)
+        lower = upper / 2
+        while at(lower) <= 0:
+            upper, lower = lower, lower / 2
+        return float(brentq(at, lower, upper, xtol=1e-300, rtol=_FINEST))
 
+    @cached_property
+    def _chain(self) -> BirthChain:
+        return BirthChain(self.chain_rates[: self.highest_level + 1])
 
-def solve(function: Callable[[float], float], lower: float, upper: float) -> float:
-    """Return the root of ``function`` between two bounds of opposite sign, to the last figures."""
-    return float(brentq(function, lower, upper, xtol=1e-300, rtol=_FINEST, maxiter=500))
+    def _at_site_shares(self, uptakes: FloatArray) -> FloatArray:
+        return binomial(self.sites, uptakes / self.sites, (self.sites - uptakes) / self.sites)
 
 
 def mean_level(composition: FloatArray) -> float:
@@ -143,11 +175,9 @@ def multi_share(composition: FloatArray) -> float:
 
 
 def mono_to_multi(composition: FloatArray) -> float | None:
-    """Return x_1 / Σ_{k≥2} x_k; None when nothing has two additions."""
+    """Return x_1 / Σ_{k≥2} x_k; None when nothing, or less than a float can tell, adds twice."""
     multi = multi_share(composition)
-    return float(composition[1]) / multi if multi > 0 else None
-
-
-def _odds(exposure_per_site: float) -> float:
-    """Return p/(1−p) for p = 1 − e^(−τ/N)."""
-    return math.inf if exposure_per_site > 700 else math.expm1(exposure_per_site)
+    if multi == 0:
+        return None
+    ratio = float(composition[1]) / multi
+    return ratio if math.isfinite(ratio) else None

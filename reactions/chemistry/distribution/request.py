@@ -5,7 +5,14 @@ from __future__ import annotations
 import math
 from typing import Annotated
 
-from pydantic import BaseModel, ConfigDict, Field, model_validator
+from pydantic import (
+    BaseModel,
+    ConfigDict,
+    Field,
+    ValidationInfo,
+    field_validator,
+    model_validator,
+)
 
 from reactions.chemistry.distribution.chain import FloatArray
 from reactions.chemistry.distribution.models import CompositionModel, ModelName, mono_to_multi
@@ -13,6 +20,8 @@ from reactions.chemistry.distribution.models import CompositionModel, ModelName,
 _Factor = Annotated[float, Field(ge=0, le=1e3, allow_inf_nan=False)]
 _NotNegative = Annotated[float, Field(ge=0, allow_inf_nan=False)]
 Efficiency = Annotated[float, Field(gt=0, le=1, allow_inf_nan=False)]
+# Equivalents worked out from an uptake may bring it back this much too large, relatively.
+_ROUNDING = 1e-12
 
 
 class Value(BaseModel):
@@ -24,49 +33,70 @@ class Value(BaseModel):
 class ModelFields(Value):
     """Which composition model.
 
-    ``sites`` is N. ``attenuation`` belongs to the sequential model: one factor for each addition
-    present, or a list with the factor that the first, second … addition brings (at most N of them;
-    additions beyond its end bring no further factor).
+    ``sites`` is N (1 to 200). ``attenuation`` belongs to the sequential model: one factor (0 to
+    1000) that each addition present brings to the rate of the next, or a list with the factor that
+    the first, second … addition brings. A list has N factors at most; additions beyond its end
+    bring no further factor.
     """
 
     model: ModelName
     sites: Annotated[int, Field(ge=1, le=200)] = 30
     attenuation: _Factor | Annotated[list[_Factor], Field(min_length=1, max_length=200)] = 1.0
 
-    @model_validator(mode="after")
-    def _attenuation_fits(self) -> ModelFields:
-        if self.model != "sequential" and self.attenuation != 1.0:
+    @field_validator("attenuation")
+    @classmethod
+    def _attenuation_fits(
+        cls, attenuation: float | list[float], info: ValidationInfo
+    ) -> float | list[float]:
+        model, sites = info.data.get("model"), info.data.get("sites")
+        if model not in (None, "sequential") and attenuation != 1.0:
             raise ValueError(
-                f"The model {self.model} knows no attenuation; choose sequential, or leave it out."
+                f"The model {model} knows no attenuation; choose sequential, or leave it out."
             )
-        if isinstance(self.attenuation, list) and len(self.attenuation) > self.sites:
+        if isinstance(attenuation, list) and sites is not None and len(attenuation) > sites:
             raise ValueError(
-                f"{len(self.attenuation)} attenuations are more than the {self.sites} sites; give "
-                f"at most {self.sites}."
+                f"{len(attenuation)} attenuations are more than the {sites} sites; give at most "
+                f"{sites}."
             )
-        return self
+        return attenuation
 
     @property
     def composition_model(self) -> CompositionModel:
         """Return the model itself."""
-        attenuation = self.attenuation
-        return CompositionModel(
-            self.model,
-            self.sites,
-            tuple(attenuation) if isinstance(attenuation, list) else attenuation,
-        )
+        return _model_of(self.model, self.sites, self.attenuation)
 
 
 class DistributionRequest(ModelFields):
     """A model and one of ``uptake`` (mean additions per cage), ``exposure`` (τ), ``equivalents``.
 
     Equivalents (mol reagent per mol cage) come with ``reagent_efficiency`` ε: the uptake is E·ε.
+    An uptake is at most the highest level that can be reached, which is N unless an attenuation of
+    0 blocks the way; an exposure has no end. For Poisson the exposure is the uptake.
     """
 
     uptake: _NotNegative | None = None
     exposure: Annotated[float, Field(ge=0, le=1e300, allow_inf_nan=False)] | None = None
-    equivalents: _NotNegative | None = None
     reagent_efficiency: Efficiency | None = None
+    equivalents: _NotNegative | None = None
+
+    @field_validator("uptake")
+    @classmethod
+    def _uptake_fits(cls, uptake: float | None, info: ValidationInfo) -> float | None:
+        if uptake is not None:
+            check_uptake(uptake, info, f"An uptake of {uptake:g}", per_unit=1.0)
+        return uptake
+
+    @field_validator("equivalents")
+    @classmethod
+    def _equivalents_fit(cls, equivalents: float | None, info: ValidationInfo) -> float | None:
+        efficiency = info.data.get("reagent_efficiency")
+        if equivalents is not None and efficiency is not None:
+            what = (
+                f"An uptake of {equivalents * efficiency:g} ({equivalents:g} equivalents at a "
+                f"reagent efficiency of {efficiency:g})"
+            )
+            check_uptake(equivalents * efficiency, info, what, per_unit=efficiency)
+        return equivalents
 
     @model_validator(mode="after")
     def _one_is_given(self) -> DistributionRequest:
@@ -76,30 +106,13 @@ class DistributionRequest(ModelFields):
             if getattr(self, name) is not None
         ]
         if len(given) != 1:
-            named = " and ".join(given) or "none of them"
-            raise ValueError(
-                f"Give one of uptake, exposure or equivalents; {named} "
-                f"{'is' if not given else 'are'} given."
-            )
+            named = f"{' and '.join(given)} are given" if given else "none of them is given"
+            raise ValueError(f"Give one of uptake, exposure or equivalents; {named}.")
         if (self.equivalents is None) != (self.reagent_efficiency is None):
             raise ValueError(
                 "Equivalents and reagent_efficiency go together: the uptake is their product."
             )
-        self._check_uptake()
         return self
-
-    def _check_uptake(self) -> None:
-        uptake = self.known_uptake
-        if uptake is None:
-            return
-        highest = self.composition_model.highest_level
-        if self.model != "poisson" and uptake > highest:
-            what = "sites of this cage" if highest == self.sites else "levels that can be reached"
-            raise ValueError(
-                f"An uptake of {uptake:g} is more than the {highest} {what}; give {highest} or less."
-            )
-        if self.model == "poisson" and uptake > 1e6:
-            raise ValueError(f"An uptake of {uptake:g} is beyond any cage; give at most a million.")
 
     @property
     def known_uptake(self) -> float | None:
@@ -112,8 +125,9 @@ class DistributionRequest(ModelFields):
 class DistributionResult(Value):
     """The composition: ``mole_fraction`` is x_0 … x_N (for Poisson x_N stands for N and above).
 
-    ``exposure`` is None for Poisson and where it would be infinite; ``mono_to_multi`` is None when
-    nothing has two additions.
+    ``uptake`` is the mean number of additions per cage; for Poisson that of the uncut law.
+    ``exposure`` is None for Poisson, and where it would be infinite: at an uptake of all levels
+    that can be reached. ``unreacted`` is x_0. ``mono_to_multi`` is None when nothing adds twice.
     """
 
     mole_fraction: list[float]
@@ -134,8 +148,14 @@ def distribution(request: DistributionRequest) -> DistributionResult:
     if uptake is None:
         exposure = request.exposure or 0.0
         return result_of(model, exposure, model.composition(exposure), model.uptake(exposure))
+    uptake = min(uptake, float(model.highest_level))
     exposure = model.exposure_for_uptake(uptake)
-    return result_of(model, exposure, model.composition_at_uptake(uptake), uptake)
+    composition = (
+        model.composition_at_uptake(uptake)
+        if model.has_equal_sites
+        else model.composition(exposure)
+    )
+    return result_of(model, exposure, composition, uptake)
 
 
 def result_of(
@@ -148,4 +168,29 @@ def result_of(
         exposure=None if model.name == "poisson" or math.isinf(exposure) else exposure,
         unreacted=float(composition[0]),
         mono_to_multi=mono_to_multi(composition),
+    )
+
+
+def check_uptake(uptake: float, info: ValidationInfo, what: str, *, per_unit: float) -> None:
+    """Raise ValueError when the model being validated can't take this uptake.
+
+    ``what`` names the value typed; one unit of it brings an uptake of ``per_unit``.
+    """
+    if not {"model", "sites", "attenuation"} <= set(info.data):
+        return
+    model = _model_of(info.data["model"], info.data["sites"], info.data["attenuation"])
+    if uptake <= model.highest_level * (1 + _ROUNDING):
+        return
+    limit = (
+        f"{model.sites} sites of this cage"
+        if model.highest_level == model.sites
+        else f"{model.highest_level} additions that this attenuation allows"
+    )
+    most = math.floor(model.highest_level / per_unit * 1e4) / 1e4
+    raise ValueError(f"{what} is more than the {limit}; give at most {most:.12g}.")
+
+
+def _model_of(name: ModelName, sites: int, attenuation: float | list[float]) -> CompositionModel:
+    return CompositionModel(
+        name, sites, tuple(attenuation) if isinstance(attenuation, list) else attenuation
     )

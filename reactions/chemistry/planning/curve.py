@@ -4,14 +4,14 @@ from __future__ import annotations
 
 from typing import Annotated
 
-import numpy as np
-from pydantic import Field, model_validator
+from pydantic import Field
 
-from reactions.chemistry.distribution.chain import FloatArray
 from reactions.chemistry.distribution.models import CompositionModel
 from reactions.chemistry.distribution.request import Efficiency, ModelFields, Value
 
 _DEFAULT_HIGHEST_UPTAKE = 3.0
+# The last level is neared without end; a curve stops this far short of it, relatively.
+_SHORT_OF_THE_END = 1e-6
 
 
 class CurveRequest(ModelFields):
@@ -22,18 +22,12 @@ class CurveRequest(ModelFields):
     points: Annotated[int, Field(ge=2, le=1001)] = 121
     highest_level_shown: Annotated[int, Field(ge=1, le=200)] = 6
 
-    @model_validator(mode="after")
-    def _levels_fit_the_sites(self) -> CurveRequest:
-        if self.highest_level_shown > self.sites:
-            return self.model_copy(update={"highest_level_shown": self.sites})
-        return self
-
 
 class CurveResult(Value):
     """At each of the ``equivalents``: x_0 … x_shown, and all levels above as ``higher``.
 
-    Points follow each other by equal steps of exposure or uptake, so their equivalents need not be
-    evenly spaced.
+    ``shown`` is the highest level shown, or the sites if those are fewer. In the sequential model
+    points follow each other by steps of exposure, so their equivalents are not evenly spaced.
     """
 
     equivalents: list[float]
@@ -44,12 +38,11 @@ class CurveResult(Value):
 def curve(request: CurveRequest) -> CurveResult:
     """Return compositions from no reagent up to ``highest_equivalents``.
 
-    Without it, up to an uptake of 3, or the highest level that can be reached if that is less.
+    Without it, up to an uptake of 3; in either case no further than all levels that can be reached.
     """
     model = request.composition_model
-    highest_uptake = _highest_uptake(request, model)
-    uptakes, compositions = _points(model, highest_uptake, request.points)
-    shown = request.highest_level_shown + 1
+    uptakes, compositions = model.along_uptakes(_highest_uptake(request, model), request.points)
+    shown = min(request.highest_level_shown, request.sites) + 1
     return CurveResult(
         equivalents=(uptakes / request.reagent_efficiency).tolist(),
         mole_fraction=compositions[:, :shown].tolist(),
@@ -58,28 +51,9 @@ def curve(request: CurveRequest) -> CurveResult:
 
 
 def _highest_uptake(request: CurveRequest, model: CompositionModel) -> float:
-    reachable = model.highest_level * (1 - 1e-6)
-    if request.highest_equivalents is None:
-        return min(_DEFAULT_HIGHEST_UPTAKE, reachable)
-    uptake = request.highest_equivalents * request.reagent_efficiency
-    return uptake if model.name == "poisson" else min(uptake, reachable)
-
-
-def _points(
-    model: CompositionModel, highest_uptake: float, count: int
-) -> tuple[FloatArray, FloatArray]:
-    """Return uptakes and compositions; in the sequential model parametrised by the exposure.
-
-    Inverting the uptake at every point would cost a root search each; stepping through exposures
-    gives points on the same curve.
-    """
-    if model.name != "sequential":
-        uptakes = np.linspace(0.0, highest_uptake, count)
-        return uptakes, np.array([model.composition_at_uptake(uptake) for uptake in uptakes])
-    last = model.exposure_for_uptake(highest_uptake)
-    # Dense where the uptake rises fast, at the start: e^τ-like spacing for long exposures.
-    exposures = np.expm1(np.linspace(0.0, np.log1p(last), count))
-    exposures[-1] = last
-    compositions = model.compositions(exposures)
-    levels = np.arange(compositions.shape[1])
-    return compositions @ levels, compositions
+    wanted = (
+        _DEFAULT_HIGHEST_UPTAKE
+        if request.highest_equivalents is None
+        else request.highest_equivalents * request.reagent_efficiency
+    )
+    return min(wanted, model.highest_level * (1 - _SHORT_OF_THE_END))

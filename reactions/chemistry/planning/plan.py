@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from typing import Annotated
 
-from pydantic import Field, model_validator
+from pydantic import Field, ValidationInfo, field_validator
 
 from reactions.chemistry.distribution.chain import FloatArray
 from reactions.chemistry.distribution.models import CompositionModel
@@ -18,13 +18,13 @@ from reactions.chemistry.distribution.request import (
 )
 from reactions.chemistry.masses import cage_molar_mass_g_per_mol
 from reactions.chemistry.planning.objectives import (
-    Band,
     MonoToMulti,
-    MostOfLevel,
     Objective,
-    best_exposure,
+    Uptake,
     objective_value,
+    wanted_levels,
 )
+from reactions.chemistry.planning.optimum import Optimum, best_of
 
 # How far the reagent is varied to show how sharp an optimum is.
 _VARIATION = 0.05
@@ -34,8 +34,9 @@ _Mass = Annotated[float, Field(gt=0, le=1e9, allow_inf_nan=False)]
 class PlanRequest(ModelFields):
     """A model, an objective and the reagent efficiency ε (share of the reagent that adds).
 
-    For masses give ``cage`` with ``cage_mass_mg`` (as weighed, of purity ``cage_purity``) and
-    ``addition_mass_g_per_mol``, the mass that one addition adds to the cage.
+    For masses give ``cage_mass_mg`` (as weighed, of purity ``cage_purity``), ``cage`` (C60, C70,
+    C84, Sc3N@C80 and the like) and ``addition_mass_g_per_mol``, the mass that one addition adds to
+    the cage.
     """
 
     objective: Objective
@@ -47,24 +48,21 @@ class PlanRequest(ModelFields):
         None
     )
 
-    @model_validator(mode="after")
-    def _levels_fit_the_sites(self) -> PlanRequest:
-        wanted = 0
-        if isinstance(self.objective, MostOfLevel):
-            wanted = self.objective.level
-        elif isinstance(self.objective, Band):
-            wanted = self.objective.highest
-        if wanted > self.sites:
-            raise ValueError(
-                f"Level {wanted} is above the {self.sites} sites of this cage; give at most "
-                f"{self.sites}."
-            )
-        if self.model == "poisson" and wanted == self.sites:
-            raise ValueError(
-                f"With {self.sites} sites the Poisson model counts all from {wanted} upward as one "
-                "level; give more sites, or choose a model with a last level."
-            )
-        return self
+    @field_validator("objective")
+    @classmethod
+    def _objective_fits(cls, objective: Objective, info: ValidationInfo) -> Objective:
+        sites, model = info.data.get("sites"), info.data.get("model")
+        if sites is not None:
+            _check_levels(objective, sites)
+            if model == "poisson":
+                _check_poisson(objective, sites)
+        return objective
+
+    @field_validator("cage")
+    @classmethod
+    def _cage_has_a_mass(cls, cage: str) -> str:
+        cage_molar_mass_g_per_mol(cage)
+        return cage
 
 
 class Neighbour(Value):
@@ -77,9 +75,12 @@ class Neighbour(Value):
 class PlanResult(DistributionResult):
     """The plan.
 
-    ``conversion`` is 1 − x_0. ``level_mass_mg`` is the mass expected of each level, and
-    ``unreacted_cage_mg`` that of level 0; both None unless the masses were given. Where the
-    objective can't be met, ``objective_met`` is False and ``message`` says what the best is.
+    ``conversion`` is 1 − x_0. ``objective_value`` is what the objective counts: a mole fraction,
+    the ratio mono : multi (None where nothing adds twice), or the uptake. ``level_mass_mg`` is the
+    mass expected of each level 0 … N, None unless the masses were given; ``unreacted_cage_mg`` is
+    that of level 0 and needs the cage's mass only. Where the objective can't be met,
+    ``objective_met`` is False and ``message`` says what the best is. ``sensitivity`` holds the plan
+    with 5 % less and with 5 % more reagent.
     """
 
     equivalents: float
@@ -94,28 +95,30 @@ class PlanResult(DistributionResult):
 
 
 def plan(request: PlanRequest) -> PlanResult:
-    """Return the equivalents that serve the objective best, with composition, masses and cost.
-
-    Raises ValueError (``StructureError``) for a cage whose mass can't be told.
-    """
+    """Return the equivalents that serve the objective best, with composition, masses and cost."""
     model = request.composition_model
-    optimum = best_exposure(model, request.objective)
-    composition = model.composition(optimum.exposure)
-    uptake = _uptake(model, optimum.exposure)
-    base = result_of(model, optimum.exposure, composition, uptake)
-    equivalents = uptake / request.reagent_efficiency
-    masses = _level_masses_mg(request, composition)
-    value = objective_value(request.objective, composition, uptake)
+    optimum = best_of(model, request.objective)
+    composition = (
+        model.composition_at_uptake(optimum.uptake)
+        if model.has_equal_sites
+        else model.composition(optimum.exposure)
+    )
+    base = result_of(model, optimum.exposure, composition, optimum.uptake)
+    equivalents = optimum.uptake / request.reagent_efficiency
+    value = objective_value(request.objective, composition, optimum.uptake)
+    charged_mg = (
+        None if request.cage_mass_mg is None else request.cage_mass_mg * request.cage_purity
+    )
     return PlanResult(
         **base.model_dump(),
         equivalents=equivalents,
-        conversion=1.0 - base.unreacted,
+        conversion=float(composition[1:].sum()),
         objective_value=value,
         objective_met=not optimum.shortfall,
-        message=optimum.shortfall or _remark(request, value),
+        message=_message(request, optimum, value, equivalents),
         reagent_efficiency=request.reagent_efficiency,
-        level_mass_mg=masses,
-        unreacted_cage_mg=None if masses is None else masses[0],
+        level_mass_mg=_level_masses_mg(request, charged_mg, composition),
+        unreacted_cage_mg=None if charged_mg is None else base.unreacted * charged_mg,
         sensitivity=[
             _neighbour(model, request, equivalents * factor)
             for factor in (1 - _VARIATION, 1 + _VARIATION)
@@ -123,8 +126,28 @@ def plan(request: PlanRequest) -> PlanResult:
     )
 
 
-def _uptake(model: CompositionModel, exposure: float) -> float:
-    return float(model.highest_level) if math.isinf(exposure) else model.uptake(exposure)
+def _check_levels(objective: Objective, sites: int) -> None:
+    levels = wanted_levels(objective)
+    if levels is not None and levels[1] > sites:
+        raise ValueError(
+            f"Level {levels[1]} is above the {sites} sites of this cage; give at most {sites}."
+        )
+    if isinstance(objective, Uptake) and objective.value > sites:
+        raise ValueError(
+            f"An uptake of {objective.value:g} is more than the {sites} sites of this cage; give "
+            f"at most {sites}."
+        )
+
+
+def _check_poisson(objective: Objective, sites: int) -> None:
+    """Refuse what the last level of the Poisson model, which stands for all above, can't answer."""
+    levels = wanted_levels(objective)
+    last = 2 if isinstance(objective, MonoToMulti) else levels[1] + 1 if levels else 0
+    if last > sites:
+        raise ValueError(
+            f"With {sites} sites the Poisson model counts all from {sites} upward as one level; "
+            f"give at least {last} sites, or choose another model."
+        )
 
 
 def _neighbour(model: CompositionModel, request: PlanRequest, equivalents: float) -> Neighbour:
@@ -137,19 +160,31 @@ def _neighbour(model: CompositionModel, request: PlanRequest, equivalents: float
     )
 
 
-def _level_masses_mg(request: PlanRequest, composition: FloatArray) -> list[float] | None:
+def _level_masses_mg(
+    request: PlanRequest, charged_mg: float | None, composition: FloatArray
+) -> list[float] | None:
     """Return x_k · n(cage) · (M(cage) + k · M(addition)) for each level, in mg."""
-    if request.cage_mass_mg is None or request.addition_mass_g_per_mol is None:
+    if charged_mg is None or request.addition_mass_g_per_mol is None:
         return None
     cage = cage_molar_mass_g_per_mol(request.cage)
-    charged_mmol = request.cage_mass_mg * request.cage_purity / cage
+    charged_mmol = charged_mg / cage
     return [
         share * charged_mmol * (cage + level * request.addition_mass_g_per_mol)
         for level, share in enumerate(composition.tolist())
     ]
 
 
-def _remark(request: PlanRequest, value: float | None) -> str:
-    if isinstance(request.objective, MonoToMulti) and value is None:
-        return "Nothing adds twice in this model, so the reagent may run to full conversion."
+def _message(
+    request: PlanRequest, optimum: Optimum, value: float | None, equivalents: float
+) -> str:
+    """Return what the person has to know beside the numbers; empty where they say it all."""
+    if optimum.shortfall:
+        best = f"an uptake of {value:g}" if isinstance(request.objective, Uptake) else "0 %"
+        where = f"at {equivalents:.4g} equivalents" if equivalents else "whatever the reagent"
+        return f"{optimum.shortfall} The best is {best}, {where}."
+    if math.isinf(optimum.exposure):
+        end = "all the cages end at the last level that can be reached"
+        if isinstance(request.objective, MonoToMulti):
+            return f"Nothing adds twice in this model, so the reagent may run on: {end}."
+        return f"This is the end of the reaction, neared but never quite reached: {end}."
     return ""
