@@ -98,6 +98,18 @@ class Family:
     is_forward: bool
     source: str
 
+    def __reduce__(self) -> tuple[Callable[..., Family], tuple[Any, ...]]:
+        """Pickle through dictionaries, for work in another process: read-only views don't."""
+        return _unpickled, tuple(
+            dict(value) if isinstance(value, Mapping) else value for value in vars(self).values()
+        )
+
+
+def _unpickled(*values: Any) -> Family:
+    return Family(
+        *(MappingProxyType(value) if isinstance(value, dict) else value for value in values)
+    )
+
 
 def family_from_data(data: Mapping[str, Any]) -> Family:
     """Check a family given as a mapping with the field names of :class:`Family`, and return it.

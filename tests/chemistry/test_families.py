@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import pickle
 from itertools import combinations
 
 import pytest
@@ -340,3 +341,8 @@ def test_all_missing_fields_are_reported_at_once() -> None:
     with pytest.raises(FamilyError) as caught:
         family_from_data({})
     assert set(caught.value.errors) == set(own_family())
+
+
+@pytest.mark.parametrize("row", families().values(), ids=lambda row: row.key)
+def test_a_family_goes_to_another_process_and_back(row):
+    assert pickle.loads(pickle.dumps(row)) == row

@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Sequence
+from dataclasses import replace
 
+from reactions.bounded import run_bounded
 from reactions.chemistry.cautions import (
     CautionSheet,
     PlannedConditions,
@@ -11,6 +13,7 @@ from reactions.chemistry.cautions import (
     cautions_for,
 )
 from reactions.chemistry.families import Family
+from reactions.chemistry.structures import StructureError
 from reactions.models import Component, ComponentRole, Reaction
 
 _ACTS_ON_THE_CAGE = (ComponentRole.REAGENT,)
@@ -21,20 +24,23 @@ def cautions_of(
 ) -> CautionSheet:
     """Return the cautions of what is on the weighing list and in the conditions."""
     cage = next((row for row in components if row.role == ComponentRole.CAGE), None)
-    return cautions_for(
-        [_planned(row) for row in components],
-        PlannedConditions(
-            solvent=reaction.solvent or None,
-            temperature_c=reaction.temperature_c,
-            cage_mmol=_first(cage.actual_mmol, cage.planned_mmol) if cage else None,
-            family_key=reaction.family_key,
-            level=reaction.target_level,
-            light=reaction.light or None,
-            atmosphere=reaction.atmosphere or None,
-            equivalents=_reagent_equivalents(components),
-            family=family,
-        ),
+    conditions = PlannedConditions(
+        solvent=reaction.solvent or None,
+        temperature_c=reaction.temperature_c,
+        cage_mmol=_first(cage.actual_mmol, cage.planned_mmol) if cage else None,
+        family_key=reaction.family_key,
+        level=reaction.target_level,
+        light=reaction.light or None,
+        atmosphere=reaction.atmosphere or None,
+        equivalents=_reagent_equivalents(components),
+        family=family,
     )
+    substances = [_planned(row) for row in components]
+    try:
+        return run_bounded(cautions_for, substances, conditions)
+    except StructureError:
+        # A structure that can't be worked on must not cost the cautions that names alone give.
+        return cautions_for([replace(row, smiles=None) for row in substances], conditions)
 
 
 def _planned(row: Component) -> PlannedSubstance:
