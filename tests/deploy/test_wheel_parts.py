@@ -24,7 +24,7 @@ def prepare(hook, folder):
 def test_missing_parts_are_named_with_what_brings_them(wheel_parts, tmp_path):
     (tmp_path / PARTS).mkdir(parents=True)
     (tmp_path / PARTS / "htmx.min.js").touch()
-    with pytest.raises(FileNotFoundError, match="lacks openchemlib.js.*Run deploy/parts") as told:
+    with pytest.raises(FileNotFoundError, match=r"lacks openchemlib\.js.*Run deploy/parts") as told:
         prepare(wheel_parts, tmp_path)
     assert "htmx" not in str(told.value)
 
