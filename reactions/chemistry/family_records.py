@@ -98,16 +98,21 @@ class Family:
     is_forward: bool
     source: str
 
-    def __reduce__(self) -> tuple[Callable[..., Family], tuple[Any, ...]]:
+    def __reduce__(self) -> tuple[Callable[[Mapping[str, Any]], Family], tuple[dict[str, Any]]]:
         """Pickle through dictionaries, for work in another process: read-only views don't."""
-        return _unpickled, tuple(
-            dict(value) if isinstance(value, Mapping) else value for value in vars(self).values()
-        )
+        plain = {
+            name: dict(value) if isinstance(value, Mapping) else value
+            for name, value in vars(self).items()
+        }
+        return _unpickled, (plain,)
 
 
-def _unpickled(*values: Any) -> Family:
+def _unpickled(values: Mapping[str, Any]) -> Family:
     return Family(
-        *(MappingProxyType(value) if isinstance(value, dict) else value for value in values)
+        **{
+            name: MappingProxyType(value) if isinstance(value, dict) else value
+            for name, value in values.items()
+        }
     )
 
 
