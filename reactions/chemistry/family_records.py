@@ -108,12 +108,11 @@ class Family:
 
 
 def _unpickled(values: Mapping[str, Any]) -> Family:
-    return Family(
-        **{
-            name: MappingProxyType(value) if isinstance(value, dict) else value
-            for name, value in values.items()
-        }
-    )
+    read_only: dict[str, Any] = {
+        name: MappingProxyType(value) if isinstance(value, dict) else value
+        for name, value in values.items()
+    }
+    return Family(**read_only)
 
 
 def family_from_data(data: Mapping[str, Any]) -> Family:

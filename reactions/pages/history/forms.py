@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from typing import Any
 
 from django import forms
-from django.contrib.auth.models import AbstractBaseUser
+from django.contrib.auth.models import User
 
 from reactions.models import Campaign, HistoryImport
 from reactions.services.history.columns import FIELDS, HistoryField
@@ -24,7 +24,7 @@ class UploadForm(forms.Form):
         widget=forms.ClearableFileInput(attrs={"accept": ".csv,.tsv,.txt,text/csv"}),
     )
 
-    def __init__(self, *args: Any, user: AbstractBaseUser, **kwargs: Any) -> None:
+    def __init__(self, *args: Any, user: User, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
         field = self.fields["campaign"]
         assert isinstance(field, forms.ModelChoiceField)  # noqa: S101 - tells the type checker
@@ -32,7 +32,7 @@ class UploadForm(forms.Form):
 
 
 class MappingForm(forms.Form):
-    """For each field of the record: a column of the file, or one value for all rows, and the unit."""
+    """For each field of the record: a column of the file or one value for all, and the unit."""
 
     def __init__(
         self, *args: Any, job: HistoryImport, header: Sequence[str], **kwargs: Any

@@ -157,8 +157,8 @@ def _check_mapping(mapping: ColumnMapping, header: list[str]) -> None:
             units = ", ".join(field.units) or "no unit"
             errors[key] = [f"“{choice.unit}” is not a unit here; choose {units}."]
     for field in FIELDS:
-        choice = mapping.get(field.key)
-        if field.is_required and not (choice and (choice.column or choice.value)):
+        given = mapping.get(field.key)
+        if field.is_required and not (given and (given.column or given.value)):
             errors[field.key] = [f"Say which column holds the {field.label}, or one value for all."]
     if errors:
         raise FieldErrors(errors)
@@ -248,7 +248,7 @@ def _read(
 def _numbered_cells(job: HistoryImport) -> list[tuple[int, dict[str, str] | None]]:
     """Return the non-empty rows by their number in the file; None for one with too many cells."""
     rows = _rows(job.content)
-    header = next(rows, [])
+    header: list[str] = next(rows, [])
     numbered: list[tuple[int, dict[str, str] | None]] = []
     for number, row in enumerate(rows, 2):
         if not any(cell.strip() for cell in row):

@@ -12,6 +12,7 @@ from django.utils import timezone
 from reactions.bounded import run_bounded
 from reactions.chemistry.mass_balance import IsolatedFraction
 from reactions.chemistry.masses import cage_molar_mass_g_per_mol, molar_mass_g_per_mol
+from reactions.chemistry.searchable_addends import SearchableAddend
 from reactions.chemistry.structures import StructureError
 from reactions.models import (
     Addend,
@@ -29,7 +30,7 @@ from reactions.models import (
     Section,
     State,
 )
-from reactions.services.addends import SearchableAddend, read_bounded, store_read_addend
+from reactions.services.addends import read_bounded, store_read_addend
 from reactions.services.found import balance_from, set_found
 from reactions.services.history.rows import HistoryRow
 from reactions.services.inputs import LineInput
