@@ -157,7 +157,7 @@ def mounted_site(clean_python, tmp_path_factory):
     with (folder / "fresh/settings.py").open("a") as file:
         file.write(settings)
     with (folder / "fresh/urls.py").open("a") as file:
-        file.write(f"from django.urls import include\nurlpatterns += [\n{addresses}]\n")
+        file.write(f"from django.urls import include\n{addresses}")
     _manage(clean_python, folder, "migrate")
     _manage(
         clean_python, folder, "createsuperuser", "--noinput",
