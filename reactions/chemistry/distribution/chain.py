@@ -130,8 +130,6 @@ class BirthChain:
         lower = self._short / 2
         while at(lower) <= 0:
             lower /= 2
-            if lower < 1 / LONGEST_EXPOSURE:
-                return lower
         return float(brentq(at, lower, 2 * lower, xtol=1e-300, rtol=_FINEST))
 
     def _rest(

@@ -25,6 +25,8 @@ from reactions.chemistry.distribution.chain import (
 from reactions.chemistry.distribution.closed_forms import binomial, poisson
 
 ModelName = Literal["independent_sites", "poisson", "sequential"]
+# At first m = τ, for r_0 = 1; what later additions add is less than a float tells up to here.
+_BEGINNING = 1e-20
 _FINEST = 4 * float(np.finfo(np.float64).eps)
 
 
@@ -106,8 +108,8 @@ class CompositionModel:
             return math.inf
         if self.has_equal_sites:
             return -self.sites * math.log1p(-uptake / self.sites)
-        if uptake == 0:
-            return 0.0
+        if uptake < _BEGINNING:
+            return uptake
         return self._chain.crossing(lambda composition: uptake - mean_level(composition))
 
     def composition_at_uptake(self, uptake: float) -> FloatArray:
