@@ -44,7 +44,7 @@ def test_an_array_from_standard_input_gives_an_array(compute):
     [
         ("distribution", '{"model": "independent_sites", "uptake": 31}', "31"),
         ("distribution", "{", "not JSON"),
-        ("distribution", "[" * 100_000, "not JSON"),
+        ("distribution", "[" * 100_000, "deep"),
         ("distribution", "3", "object"),
         ("distibution", "{}", "distribution"),
         ("amounts", '{"cage_mass_mg": 5, "lines": [{"name": "x", "smiles": "C(("}]}', "C(("),
