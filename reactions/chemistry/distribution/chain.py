@@ -24,7 +24,8 @@ from collections.abc import Callable, Iterator
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.optimize import brentq
+
+from reactions.chemistry.distribution.roots import root_between
 
 FloatArray = NDArray[np.float64]
 
@@ -130,7 +131,7 @@ class BirthChain:
         lower = self._short / 2
         while at(lower) <= 0:
             lower /= 2
-        return float(brentq(at, lower, 2 * lower, xtol=1e-300, rtol=_FINEST))
+        return root_between(at, lower, 2 * lower, absolute=1e-300, relative=_FINEST)
 
     def _rest(
         self, function: Callable[[FloatArray], float], row: FloatArray, exposure: float
@@ -139,7 +140,7 @@ class BirthChain:
         at = self._along(function, row)
         if at(self._short) >= 0:
             return self._short
-        return float(brentq(at, 0.0, self._short, xtol=_FINEST * exposure, rtol=_FINEST))
+        return root_between(at, 0.0, self._short, absolute=_FINEST * exposure, relative=_FINEST)
 
     def _along(
         self, function: Callable[[FloatArray], float], row: FloatArray

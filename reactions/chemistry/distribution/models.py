@@ -14,7 +14,6 @@ from functools import cached_property
 from typing import Literal
 
 import numpy as np
-from scipy.optimize import brentq
 
 from reactions.chemistry.distribution.chain import (
     LONGEST_EXPOSURE,
@@ -23,6 +22,7 @@ from reactions.chemistry.distribution.chain import (
     rates,
 )
 from reactions.chemistry.distribution.closed_forms import binomial, poisson
+from reactions.chemistry.distribution.roots import root_between
 
 ModelName = Literal["independent_sites", "poisson", "sequential"]
 # At first m = τ, for r_0 = 1; what later additions add is less than a float tells up to here.
@@ -156,7 +156,7 @@ class CompositionModel:
         lower = upper / 2
         while at(lower) <= 0:
             upper, lower = lower, lower / 2
-        return float(brentq(at, lower, upper, xtol=1e-300, rtol=_FINEST))
+        return root_between(at, lower, upper, absolute=1e-300, relative=_FINEST)
 
     @cached_property
     def _chain(self) -> BirthChain:
