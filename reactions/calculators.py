@@ -7,7 +7,8 @@ Those that read structures run in a bounded process, because a structure may han
 from __future__ import annotations
 
 import difflib
-from collections.abc import Callable, Mapping
+import time
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from types import MappingProxyType
 from typing import Any
@@ -114,9 +115,7 @@ def compute(name: str, data: Any) -> dict[str, Any]:
 
     Raises ``UnknownCalculatorError``, or ``FieldErrors`` for a bad request.
     """
-    if name not in CALCULATORS:
-        raise UnknownCalculatorError(name)
-    calculator = CALCULATORS[name]
+    calculator = calculator_called(name)
     try:
         request = calculator.request.model_validate(data)
     except ValidationError as error:
@@ -129,3 +128,39 @@ def compute(name: str, data: Any) -> dict[str, Any]:
     except ValueError as error:
         raise FieldErrors.at(getattr(error, "field", WHOLE), str(error)) from error
     return result.model_dump(mode="json")
+
+
+def compute_each(
+    name: str, requests: Sequence[Any], within_seconds: float = float("inf")
+) -> list[dict[str, Any]]:
+    """Return the answers to ``requests``, in their order.
+
+    Raises as ``compute`` does, with paths that start at the request's place, such as ``1.uptake``;
+    and at the place of the first request that is not begun ``within_seconds``.
+    """
+    calculator_called(name)
+    end = time.monotonic() + within_seconds
+    return [_nth(name, place, data, end) for place, data in enumerate(requests)]
+
+
+def calculator_called(name: str) -> Calculator:
+    """Return the calculator of this name; raises ``UnknownCalculatorError``."""
+    if name not in CALCULATORS:
+        raise UnknownCalculatorError(name)
+    return CALCULATORS[name]
+
+
+def _nth(name: str, place: int, data: Any, end: float) -> dict[str, Any]:
+    if time.monotonic() > end:
+        raise FieldErrors.at(
+            str(place), f"Time was up after {place} of these requests; send fewer at once."
+        )
+    try:
+        return compute(name, data)
+    except FieldErrors as error:
+        raise FieldErrors(
+            {
+                (str(place) if path == WHOLE else f"{place}.{path}"): texts
+                for path, texts in error.messages.items()
+            }
+        ) from error

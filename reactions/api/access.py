@@ -7,7 +7,8 @@ from django.contrib.auth.decorators import login_not_required
 from django.utils.decorators import method_decorator
 from drf_spectacular.utils import extend_schema
 from drf_spectacular.views import SpectacularAPIView
-from pydantic import Field
+from pydantic import BaseModel, ConfigDict, Field
+from rest_framework.negotiation import DefaultContentNegotiation
 from rest_framework.permissions import AllowAny, IsAuthenticated
 from rest_framework.request import Request
 from rest_framework.response import Response
@@ -16,11 +17,12 @@ from rest_framework.throttling import AnonRateThrottle
 from reactions.api.base import Endpoint, read_input
 from reactions.api.outputs import Output, Refusal
 from reactions.errors import WHOLE, FieldErrors
-from reactions.services.inputs import Input
 
 
-class LogInInput(Input):
-    """User name and password."""
+class LogInInput(BaseModel):
+    """User name and password, which may begin or end with spaces."""
+
+    model_config = ConfigDict(frozen=True, extra="forbid")
 
     username: str = Field(max_length=150)
     password: str = Field(max_length=1000)
@@ -74,4 +76,8 @@ class Schema(SpectacularAPIView):
     custom_settings = {"OAS_VERSION": "3.1.0"}
 
     permission_classes = [IsAuthenticated]
+    throttle_classes = []
+    content_negotiation_class = DefaultContentNegotiation
+    versioning_class = None
     get_authenticators = Endpoint.get_authenticators
+    get_exception_handler = Endpoint.get_exception_handler

@@ -3,34 +3,39 @@
 Nothing is left to the settings of the site that mounts the app: log-in is demanded, by session or
 token, and JSON is spoken, whatever its defaults are. One shape for each kind of refusal:
 
-    400 {"errors": {"lines.0.purity": ["…"]}}      404 {"detail": "…"}
+    400 {"errors": {"lines.0.purity": ["…"]}}      401, 403, 404, 428 and others {"detail": "…"}
     409 {"conflict": {"version": 7, "changes": […]}} or {"confirm": {"field": …, "reason": …}}
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable
-from typing import Any, TypeVar, cast
+from collections.abc import Callable, Mapping
+from typing import IO, Any, TypeVar, cast
 
 from django.apps import apps
+from django.conf import settings
 from django.contrib.auth.models import User
 from django.core.exceptions import ObjectDoesNotExist
 from django.http import Http404
+from drf_spectacular.openapi import AutoSchema
 from pydantic import BaseModel, ValidationError
 from rest_framework.authentication import (
     BaseAuthentication,
     SessionAuthentication,
     TokenAuthentication,
 )
-from rest_framework.exceptions import NotFound
-from rest_framework.parsers import JSONParser
+from rest_framework.exceptions import APIException, NotFound
+from rest_framework.metadata import SimpleMetadata
+from rest_framework.negotiation import DefaultContentNegotiation
+from rest_framework.parsers import BaseParser
 from rest_framework.permissions import IsAuthenticated
 from rest_framework.renderers import JSONRenderer
 from rest_framework.request import Request
 from rest_framework.response import Response
-from rest_framework.views import APIView
+from rest_framework.views import APIView, exception_handler
 
 from reactions.errors import WHOLE, FieldErrors, field_errors
+from reactions.json_text import read_json
 from reactions.services.errors import EditConflict, NeedsConfirmation, NotAllowed, RecordClosed
 
 _Input = TypeVar("_Input", bound=BaseModel)
@@ -41,13 +46,49 @@ def token_is_installed() -> bool:
     return apps.is_installed("rest_framework.authtoken")
 
 
+class TooLarge(APIException):
+    """The body is longer than the site takes."""
+
+    status_code = 413
+    default_detail = "This is too much at once; send it in smaller portions."
+
+
+class StrictJSON(BaseParser):
+    """JSON that a record can hold, no longer than the site takes in any request."""
+
+    media_type = "application/json"
+
+    def parse(
+        self,
+        stream: IO[Any],
+        media_type: str | None = None,
+        parser_context: Mapping[str, Any] | None = None,
+    ) -> Any:
+        """Return what the body says; raises ``FieldErrors``, or ``TooLarge``."""
+        longest = settings.DATA_UPLOAD_MAX_MEMORY_SIZE
+        body = stream.read() if longest is None else stream.read(longest + 1)
+        if longest is not None and len(body) > longest:
+            raise TooLarge
+        return read_json(body.decode("utf-8", "surrogateescape"))
+
+
 class Endpoint(APIView):
     """A view of the API; a person logged in by session or token, and JSON."""
 
     permission_classes = [IsAuthenticated]
     renderer_classes = [JSONRenderer]
-    parser_classes = [JSONParser]
+    parser_classes = [StrictJSON]
     throttle_classes = []
+    content_negotiation_class = DefaultContentNegotiation
+    metadata_class = SimpleMetadata
+    versioning_class = None
+    schema = AutoSchema()
+
+    def initial(self, request: Request, *args: Any, **kwargs: Any) -> None:
+        """Let nobody in without log-in; no address has anything with the character NUL."""
+        super().initial(request, *args, **kwargs)
+        if any("\x00" in str(value) for value in kwargs.values()):
+            raise Http404
 
     def get_authenticators(self) -> list[BaseAuthentication]:
         """Return the ways in; the token first, so that nobody without either gets a plain 401."""
@@ -58,6 +99,10 @@ class Endpoint(APIView):
     def person(self) -> User:
         """Return who asks; the permission saw to it that they are logged in."""
         return cast("User", self.request.user)
+
+    def get_exception_handler(self) -> Callable[..., Response | None]:
+        """Return the framework's own, whatever the site has put in its place."""
+        return exception_handler
 
     def handle_exception(self, exc: Exception) -> Response:
         """Turn what the services refuse into an answer; leave the rest to the framework."""
@@ -73,7 +118,6 @@ def read_input(kind: type[_Input], data: Any) -> _Input:
     """Return ``data`` as the input a service takes; raises ``FieldErrors``."""
     if not isinstance(data, dict):
         raise FieldErrors.at(WHOLE, "Send an object with fields.")
-    _refuse_nul(data)
     try:
         return kind.model_validate(data)
     except ValidationError as error:
@@ -85,19 +129,6 @@ def fields_of(request: Request) -> dict[str, Any]:
     if not isinstance(request.data, dict):
         raise FieldErrors.at(WHOLE, "Send an object with fields.")
     return dict(request.data)
-
-
-def _refuse_nul(value: Any) -> None:
-    """Raise for text that no database can hold."""
-    if isinstance(value, str) and "\x00" in value:
-        raise FieldErrors.at(WHOLE, "A text holds the character NUL; take it out.")
-    if isinstance(value, dict):
-        for key, inner in value.items():
-            _refuse_nul(key)
-            _refuse_nul(inner)
-    elif isinstance(value, list):
-        for inner in value:
-            _refuse_nul(inner)
 
 
 def _bad_fields(error: Any) -> Response:

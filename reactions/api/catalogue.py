@@ -7,26 +7,25 @@ from dataclasses import fields, is_dataclass
 from typing import Any
 
 from drf_spectacular.utils import extend_schema
-from pydantic import BaseModel, Field
+from pydantic import Field
 from rest_framework.request import Request
 from rest_framework.response import Response
 
 from reactions.api.base import Endpoint, fields_of, read_input
 from reactions.api.outputs import (
-    AddendList,
+    REFUSALS,
+    AddendPage,
     AnyObject,
     CampaignList,
     CampaignOutput,
     ObjectList,
-    Refusal,
 )
+from reactions.api.paging import PAGE_PARAMETERS, answer_in_pages
 from reactions.api.showing import show_addend, show_campaign
 from reactions.models import Addend, Campaign, Reaction, known_families
 from reactions.services.campaigns import open_campaign, remove_member, set_member
 from reactions.services.families import define_family
 from reactions.services.inputs import Input, LongText
-
-_REFUSALS: dict[int, type[BaseModel]] = dict.fromkeys((400, 403, 404), Refusal)
 
 
 class CampaignInput(Input):
@@ -55,7 +54,7 @@ class Campaigns(Endpoint):
     @extend_schema(
         operation_id="campaigns_open",
         request=CampaignInput,
-        responses={201: CampaignOutput, **_REFUSALS},
+        responses={201: CampaignOutput, **REFUSALS},
     )
     def post(self, request: Request) -> Response:
         """Open a campaign; you are its first author."""
@@ -67,7 +66,7 @@ class Campaigns(Endpoint):
 class OneCampaign(Endpoint):
     """One campaign."""
 
-    @extend_schema(operation_id="campaigns_read", responses={200: CampaignOutput, **_REFUSALS})
+    @extend_schema(operation_id="campaigns_read", responses={200: CampaignOutput, **REFUSALS})
     def get(self, request: Request, code: str) -> Response:
         """Return a campaign and its members."""
         campaign = Campaign.objects.visible_to(self.person).get(code=code)
@@ -80,7 +79,7 @@ class Member(Endpoint):
     @extend_schema(
         operation_id="campaigns_set_member",
         request=MemberInput,
-        responses={200: CampaignOutput, **_REFUSALS},
+        responses={200: CampaignOutput, **REFUSALS},
     )
     def put(self, request: Request, code: str, username: str) -> Response:
         """Give a person a role; an author may."""
@@ -89,7 +88,7 @@ class Member(Endpoint):
         return Response(show_campaign(campaign, self.person).model_dump())
 
     @extend_schema(
-        operation_id="campaigns_remove_member", responses={200: CampaignOutput, **_REFUSALS}
+        operation_id="campaigns_remove_member", responses={200: CampaignOutput, **REFUSALS}
     )
     def delete(self, request: Request, code: str, username: str) -> Response:
         """Take a person out; an author may."""
@@ -118,7 +117,7 @@ class Families(Endpoint):
     @extend_schema(
         operation_id="families_define",
         request=AnyObject,
-        responses={201: AnyObject, **_REFUSALS},
+        responses={201: AnyObject, **REFUSALS},
     )
     def post(self, request: Request) -> Response:
         """Add a family of the lab's own; an author of any campaign may."""
@@ -129,9 +128,13 @@ class Families(Endpoint):
 class Addends(Endpoint):
     """The addends of the campaigns of who asks."""
 
-    @extend_schema(operation_id="addends_list", responses={200: AddendList})
+    @extend_schema(
+        operation_id="addends_list",
+        parameters=PAGE_PARAMETERS,
+        responses={200: AddendPage, **REFUSALS},
+    )
     def get(self, request: Request) -> Response:
-        """Return the addends of the reactions you may see."""
+        """Return the addends of the reactions you may see, by name."""
         used = Reaction.objects.visible_to(self.person).values("addend")
-        rows = Addend.objects.filter(pk__in=used)
-        return Response([show_addend(row).model_dump() for row in rows])
+        rows = Addend.objects.filter(pk__in=used).order_by("name", "pk")
+        return answer_in_pages(request, rows, show_addend)

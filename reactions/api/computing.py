@@ -2,19 +2,28 @@
 
 from __future__ import annotations
 
-from typing import Any
+from typing import Annotated, Any
 
 from drf_spectacular.utils import extend_schema
+from pydantic import BaseModel, Field, RootModel, create_model
 from rest_framework.exceptions import NotFound
 from rest_framework.request import Request
 from rest_framework.response import Response
 
 from reactions.api.base import Endpoint
-from reactions.api.outputs import AnyObject, Refusal
-from reactions.calculators import CALCULATORS, Calculator, UnknownCalculatorError, compute
+from reactions.api.outputs import REFUSALS, AnyObject
+from reactions.calculators import (
+    CALCULATORS,
+    Calculator,
+    UnknownCalculatorError,
+    compute,
+    compute_each,
+)
 from reactions.errors import WHOLE, FieldErrors
 
 MOST_AT_ONCE = 1000
+# An array holds a server thread; what takes longer belongs to the command.
+LONGEST_SECONDS = 30.0
 
 
 class Calculators(Endpoint):
@@ -48,18 +57,7 @@ class Compute(Endpoint):
             raise FieldErrors.at(
                 WHOLE, f"{len(data)} requests are too many at once; send {MOST_AT_ONCE} or fewer."
             )
-        return Response([self._nth(place, row) for place, row in enumerate(data)])
-
-    def _nth(self, place: int, row: Any) -> dict[str, Any]:
-        try:
-            return compute(self.name, row)
-        except FieldErrors as error:
-            raise FieldErrors(
-                {
-                    (f"{place}" if path == WHOLE else f"{place}.{path}"): texts
-                    for path, texts in error.messages.items()
-                }
-            ) from error
+        return Response(compute_each(self.name, data, within_seconds=LONGEST_SECONDS))
 
 
 class NoSuchCalculator(Endpoint):
@@ -71,14 +69,22 @@ class NoSuchCalculator(Endpoint):
         raise NotFound(str(UnknownCalculatorError(name)))
 
 
+def _one_or_more(kind: type[BaseModel]) -> type[BaseModel]:
+    """Return the type of one value, or of an array of at most as many as are taken at once."""
+    one: Any = kind
+    several: Any = Annotated[list[one], Field(max_length=MOST_AT_ONCE)]
+    values: Any = RootModel[one | several]
+    return create_model(f"{kind.__name__}s", __base__=values, __doc__="One, or an array.")
+
+
 def view_of(calculator: Calculator) -> type[Compute]:
     """Return the view of one calculator, typed for the schema."""
 
     @extend_schema(
         operation_id=f"compute_{calculator.name}",
         summary=calculator.summary,
-        request=calculator.request,
-        responses={200: calculator.result, 400: Refusal},
+        request=_one_or_more(calculator.request),
+        responses={200: _one_or_more(calculator.result), **REFUSALS},
     )
     def post(self: Compute, request: Request) -> Response:
         return self.answer(request.data)

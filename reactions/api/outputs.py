@@ -23,6 +23,9 @@ class Refusal(Output):
     conflict: dict[str, Any] | None = None
 
 
+REFUSALS: dict[int, type[BaseModel]] = dict.fromkeys((400, 401, 403, 404, 409, 413, 428), Refusal)
+
+
 class AddendOutput(Output):
     """An addend: ``*`` in its SMILES marks where it is attached."""
 
@@ -43,10 +46,6 @@ class CampaignOutput(Output):
     is_invented: bool
     role: str
     members: dict[str, str]
-
-
-class AddendList(RootModel[list[AddendOutput]]):
-    """Addends."""
 
 
 class CampaignList(RootModel[list[CampaignOutput]]):
@@ -210,6 +209,15 @@ class ReactionOutput(ReactionSummary):
     mass_balance: MassBalanceOutput | None
     signatures: list[SignatureOutput]
     revisions: list[RevisionOutput]
+
+
+class AddendPage(Output):
+    """One page of addends."""
+
+    count: int
+    next: str | None
+    previous: str | None
+    results: list[AddendOutput]
 
 
 class ReactionPage(Output):

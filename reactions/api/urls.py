@@ -4,22 +4,22 @@ from __future__ import annotations
 
 from django.urls import path
 
-from reactions.api import access, catalogue, computing, records
+from reactions.api import access, catalogue, computing, parts, records
 from reactions.api.base import token_is_installed
 from reactions.api.description import description
 from reactions.calculators import CALCULATORS
 
 _RECORD = "reactions/<str:label>/"
 _PARTS = {
-    "lines": records.Lines,
-    "conditions": records.Conditions,
-    "isolation": records.Isolation,
-    "conclusion": records.Conclusion,
-    "observations": records.Observations,
-    "readings": records.Readings,
-    "state": records.StateOfReaction,
-    "signature": records.AuthorSignature,
-    "countersignature": records.Countersignature,
+    "lines": parts.Lines,
+    "conditions": parts.Conditions,
+    "isolation": parts.Isolation,
+    "conclusion": parts.Conclusion,
+    "observations": parts.Observations,
+    "readings": parts.Readings,
+    "state": parts.StateOfReaction,
+    "signature": parts.AuthorSignature,
+    "countersignature": parts.Countersignature,
 }
 
 urlpatterns = [
@@ -38,10 +38,10 @@ urlpatterns = [
     path(_RECORD, records.OneReaction.as_view(), name="api-reaction"),
     path(
         f"{_RECORD}observations/<int:pk>/",
-        records.OneObservation.as_view(),
+        parts.OneObservation.as_view(),
         name="api-observation",
     ),
-    path(f"{_RECORD}readings/<int:pk>/", records.OneReading.as_view(), name="api-reading"),
+    path(f"{_RECORD}readings/<int:pk>/", parts.OneReading.as_view(), name="api-reading"),
     *(
         path(f"{_RECORD}{name}/", view.as_view(), name=f"api-{name}")
         for name, view in _PARTS.items()

@@ -36,4 +36,6 @@ def test_a_family_that_lacks_something_says_what(api, campaign):
 
 
 def test_the_addends_of_ones_campaigns(api, planned):
-    assert [row["formula"] for row in api.get("/api/addends/").json()] == ["C7H10O4"]
+    found = api.get("/api/addends/").json()
+    assert [row["formula"] for row in found["results"]] == ["C7H10O4"]
+    assert (found["count"], found["next"]) == (1, None)

@@ -37,7 +37,7 @@ def test_the_whole_record_over_the_api(api, planned):
     concluded = {"conclusion": "as planned", "seen_version": 6}
     assert api.put(f"{address}conclusion/", concluded, format="json").status_code == 200
     assert api.post(f"{address}state/", {"state": "completed"}, format="json").status_code == 200
-    signed = api.post(f"{address}signature/").json()
+    signed = api.post(f"{address}signature/", {"seen_version": 8}, format="json").json()
     assert signed["state"] == "signed"
     assert signed["signatures"][0]["is_true_today"]
     assert api.put(f"{address}conclusion/", concluded, format="json").status_code == 409
@@ -113,6 +113,6 @@ def test_a_reviewer_countersigns(api, api_of, reviewer, planned):
     for state in ("running", "completed"):
         api.post(f"{address}state/", {"state": state}, format="json")
     assert api_of(reviewer).post(f"{address}countersignature/").status_code == 409
-    api.post(f"{address}signature/")
+    assert api.post(f"{address}signature/", headers={"If-Match": '"3"'}).status_code == 200
     answer = api_of(reviewer).post(f"{address}countersignature/")
     assert [row["role"] for row in answer.json()["signatures"]] == ["author", "reviewer"]
