@@ -9,7 +9,18 @@ from django import forms
 from django.contrib.auth.models import User
 
 from reactions.models import Campaign, HistoryImport
-from reactions.services.history.columns import FIELDS, HistoryField
+from reactions.services.history.columns import FIELDS
+
+# What a cell of each kind may hold.
+_EXAMPLES = {
+    "mass": "0.25 g",
+    "volume": "50 mL",
+    "temperature": "110 °C",
+    "duration": "1 h 30 min",
+    "share": "45 % or 0.45",
+    "date": "2026-03-31 or 31.03.2026",
+    "structure": "SMILES",
+}
 
 
 class UploadForm(forms.Form):
@@ -58,6 +69,7 @@ class MappingForm(forms.Form):
         return [
             {
                 "field": field,
+                "hint": _EXAMPLES.get(field.kind, ""),
                 "column": self[f"{field.key}-column"],
                 "value": self[f"{field.key}-value"],
                 "unit": self[f"{field.key}-unit"] if field.units else None,
@@ -90,16 +102,3 @@ def _initial(job: HistoryImport) -> dict[str, str]:
         for key, choice in job.column_mapping.items()
         for part, text in choice.items()
     }
-
-
-def field_hint(field: HistoryField) -> str:
-    """Return what a cell of this field looks like."""
-    examples = {
-        "mass": "0.25 g, or 250 with the unit named here",
-        "volume": "50 mL",
-        "temperature": "110 °C",
-        "duration": "2 h",
-        "share": "45 % or 0.45",
-        "date": "2026-03-31 or 31.03.2026",
-    }
-    return examples.get(field.kind, "")
