@@ -7,6 +7,7 @@ from typing import Annotated
 from pydantic import BaseModel, ConfigDict, Field
 
 from reactions.chemistry.masses import formula, molar_mass_g_per_mol, monoisotopic_mass
+from reactions.chemistry.structures import StructureError
 
 
 class MolarMassRequest(BaseModel):
@@ -27,10 +28,19 @@ class MolarMassResult(BaseModel):
     monoisotopic_mass: float
 
 
+class MolarMassError(StructureError):
+    """The structure can't be read; ``field`` is where it stands in the request."""
+
+    field = "smiles"
+
+
 def molar_mass(request: MolarMassRequest) -> MolarMassResult:
-    """Return formula and masses; raises StructureError for a structure that can't be read."""
-    return MolarMassResult(
-        formula=formula(request.smiles),
-        molar_mass_g_per_mol=molar_mass_g_per_mol(request.smiles),
-        monoisotopic_mass=monoisotopic_mass(request.smiles),
-    )
+    """Return formula and masses; raises MolarMassError for a structure that can't be read."""
+    try:
+        return MolarMassResult(
+            formula=formula(request.smiles),
+            molar_mass_g_per_mol=molar_mass_g_per_mol(request.smiles),
+            monoisotopic_mass=monoisotopic_mass(request.smiles),
+        )
+    except StructureError as error:
+        raise MolarMassError(str(error)) from error

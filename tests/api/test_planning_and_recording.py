@@ -51,12 +51,6 @@ def _typed(line):
     return kept
 
 
-def test_a_change_says_which_version_it_saw(api, planned):
-    assert api.put(LINES, {"lines": []}, format="json").status_code == 428
-    answer = api.put(LINES, {"lines": []}, format="json", headers={"If-Match": '"1"'})
-    assert (answer.status_code, answer["ETag"]) == (200, '"2"')
-
-
 def test_a_conflict_says_what_changed_and_stores_nothing(api, api_of, second_author, planned):
     address = "/api/reactions/ACC-1/conditions/"
     api.put(address, {"temperature_c": 60, "seen_version": 1}, format="json")
