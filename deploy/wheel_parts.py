@@ -11,9 +11,6 @@ _FOLDER = Path("reactions/static/reactions/parts")
 _NEEDED = (
     "htmx.min.js",
     "openchemlib.js",
-    "pico.min.css",
-    "uPlot.iife.min.js",
-    "uPlot.min.css",
 )
 
 
