@@ -6,12 +6,12 @@ from collections.abc import Mapping
 from dataclasses import fields, is_dataclass
 from typing import Any
 
-from drf_spectacular.utils import extend_schema
 from pydantic import Field
 from rest_framework.request import Request
 from rest_framework.response import Response
 
 from reactions.api.base import Endpoint, fields_of, read_input
+from reactions.api.openapi import described
 from reactions.api.outputs import (
     REFUSALS,
     AddendPage,
@@ -45,13 +45,13 @@ class MemberInput(Input):
 class Campaigns(Endpoint):
     """The campaigns of who asks."""
 
-    @extend_schema(operation_id="campaigns_list", responses={200: CampaignList})
+    @described(operation_id="campaigns_list", responses={200: CampaignList})
     def get(self, request: Request) -> Response:
         """Return the campaigns of which you are a member."""
         rows = Campaign.objects.visible_to(self.person)
         return Response([show_campaign(row, self.person).model_dump() for row in rows])
 
-    @extend_schema(
+    @described(
         operation_id="campaigns_open",
         request=CampaignInput,
         responses={201: CampaignOutput, **REFUSALS},
@@ -66,7 +66,7 @@ class Campaigns(Endpoint):
 class OneCampaign(Endpoint):
     """One campaign."""
 
-    @extend_schema(operation_id="campaigns_read", responses={200: CampaignOutput, **REFUSALS})
+    @described(operation_id="campaigns_read", responses={200: CampaignOutput, **REFUSALS})
     def get(self, request: Request, code: str) -> Response:
         """Return a campaign and its members."""
         campaign = Campaign.objects.visible_to(self.person).get(code=code)
@@ -76,7 +76,7 @@ class OneCampaign(Endpoint):
 class Member(Endpoint):
     """One member of a campaign."""
 
-    @extend_schema(
+    @described(
         operation_id="campaigns_set_member",
         request=MemberInput,
         responses={200: CampaignOutput, **REFUSALS},
@@ -87,9 +87,7 @@ class Member(Endpoint):
         set_member(self.person, campaign, username, read_input(MemberInput, request.data).role)
         return Response(show_campaign(campaign, self.person).model_dump())
 
-    @extend_schema(
-        operation_id="campaigns_remove_member", responses={200: CampaignOutput, **REFUSALS}
-    )
+    @described(operation_id="campaigns_remove_member", responses={200: CampaignOutput, **REFUSALS})
     def delete(self, request: Request, code: str, username: str) -> Response:
         """Take a person out; an author may."""
         campaign = Campaign.objects.visible_to(self.person).get(code=code)
@@ -109,12 +107,12 @@ def _plain(value: Any) -> Any:
 class Families(Endpoint):
     """The addition families."""
 
-    @extend_schema(operation_id="families_list", responses={200: ObjectList})
+    @described(operation_id="families_list", responses={200: ObjectList})
     def get(self, request: Request) -> Response:
         """Return every family, the table's and the lab's own."""
         return Response([_plain(family) for family in known_families().values()])
 
-    @extend_schema(
+    @described(
         operation_id="families_define",
         request=AnyObject,
         responses={201: AnyObject, **REFUSALS},
@@ -128,7 +126,7 @@ class Families(Endpoint):
 class Addends(Endpoint):
     """The addends of the campaigns of who asks."""
 
-    @extend_schema(
+    @described(
         operation_id="addends_list",
         parameters=PAGE_PARAMETERS,
         responses={200: AddendPage, **REFUSALS},

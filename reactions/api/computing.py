@@ -4,13 +4,13 @@ from __future__ import annotations
 
 from typing import Annotated, Any
 
-from drf_spectacular.utils import extend_schema
 from pydantic import BaseModel, Field, RootModel, create_model
 from rest_framework.exceptions import NotFound
 from rest_framework.request import Request
 from rest_framework.response import Response
 
 from reactions.api.base import Endpoint
+from reactions.api.openapi import described
 from reactions.api.outputs import REFUSALS, AnyObject
 from reactions.calculators import (
     CALCULATORS,
@@ -29,7 +29,7 @@ LONGEST_SECONDS = 30.0
 class Calculators(Endpoint):
     """The list of calculators."""
 
-    @extend_schema(operation_id="compute_list", responses={200: AnyObject})
+    @described(operation_id="compute_list", responses={200: AnyObject})
     def get(self, request: Request) -> Response:
         """Return each calculator with the JSON schemas of its request and its result."""
         return Response(
@@ -63,7 +63,7 @@ class Compute(Endpoint):
 class NoSuchCalculator(Endpoint):
     """The answer to a name that is none."""
 
-    @extend_schema(exclude=True)
+    @described(exclude=True)
     def post(self, request: Request, name: str) -> Response:
         """Say which calculators there are."""
         raise NotFound(str(UnknownCalculatorError(name)))
@@ -80,7 +80,7 @@ def _one_or_more(kind: type[BaseModel]) -> type[BaseModel]:
 def view_of(calculator: Calculator) -> type[Compute]:
     """Return the view of one calculator, typed for the schema."""
 
-    @extend_schema(
+    @described(
         operation_id=f"compute_{calculator.name}",
         summary=calculator.summary,
         request=_one_or_more(calculator.request),

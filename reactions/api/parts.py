@@ -5,12 +5,12 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Any
 
-from drf_spectacular.utils import extend_schema
 from pydantic import Field
 from rest_framework.request import Request
 from rest_framework.response import Response
 
 from reactions.api.base import Endpoint, fields_of, read_input
+from reactions.api.openapi import described
 from reactions.api.outputs import REFUSALS, ReactionOutput
 from reactions.api.records import answer_with, find_reaction
 from reactions.api.versions import SEEN, seen_version, stated_version, with_seen_version
@@ -85,7 +85,7 @@ class Part(Endpoint):
 class Lines(Part):
     """The weighing list."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_lines",
         parameters=[SEEN],
         request=with_seen_version(LinesInput),
@@ -103,7 +103,7 @@ class Lines(Part):
 class Conditions(Part):
     """The conditions."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_conditions",
         parameters=[SEEN],
         request=with_seen_version(ConditionsInput),
@@ -121,7 +121,7 @@ class Conditions(Part):
 class Isolation(Part):
     """The isolation."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_isolation",
         parameters=[SEEN],
         request=with_seen_version(IsolationInput),
@@ -139,7 +139,7 @@ class Isolation(Part):
 class Conclusion(Part):
     """The conclusion."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_conclusion",
         parameters=[SEEN],
         request=with_seen_version(ConclusionInput),
@@ -157,7 +157,7 @@ class Conclusion(Part):
 class Observations(Part):
     """The time line."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_observe",
         request=ObservationInput,
         responses=_ADDED,
@@ -172,7 +172,7 @@ class Observations(Part):
 class OneObservation(Part):
     """A line of the time line."""
 
-    @extend_schema(operation_id="reactions_unobserve", responses=_CHANGED)
+    @described(operation_id="reactions_unobserve", responses=_CHANGED)
     def delete(self, request: Request, label: str, pk: int) -> Response:
         """Take a line out; the revision keeps what it said."""
         return self._write(label, lambda edit: remove_observation(edit, pk))
@@ -181,7 +181,7 @@ class OneObservation(Part):
 class Readings(Part):
     """The readings."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_read_out",
         request=ReadingInput,
         responses=_ADDED,
@@ -196,7 +196,7 @@ class Readings(Part):
 class OneReading(Part):
     """A reading."""
 
-    @extend_schema(operation_id="reactions_unread", responses=_CHANGED)
+    @described(operation_id="reactions_unread", responses=_CHANGED)
     def delete(self, request: Request, label: str, pk: int) -> Response:
         """Take a reading out; the revision keeps what it said."""
         return self._write(label, lambda edit: remove_reading(edit, pk))
@@ -205,7 +205,7 @@ class OneReading(Part):
 class StateOfReaction(Part):
     """The state."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_move",
         parameters=[SEEN],
         request=with_seen_version(StateInput),
@@ -223,7 +223,7 @@ class StateOfReaction(Part):
 class AuthorSignature(Part):
     """The author's signature."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_sign",
         parameters=[SEEN],
         request=with_seen_version(SignatureInput),
@@ -242,7 +242,7 @@ class AuthorSignature(Part):
 class Countersignature(Part):
     """A reviewer's signature."""
 
-    @extend_schema(operation_id="reactions_countersign", request=None, responses=_CHANGED)
+    @described(operation_id="reactions_countersign", request=None, responses=_CHANGED)
     def post(self, request: Request, label: str) -> Response:
         """Countersign a signed reaction, which no longer changes."""
         return self._write(label, countersign)

@@ -6,12 +6,13 @@ import re
 from typing import Any
 
 from django.core.exceptions import ObjectDoesNotExist
-from drf_spectacular.utils import OpenApiParameter, extend_schema
+from drf_spectacular.utils import OpenApiParameter
 from pydantic import Field
 from rest_framework.request import Request
 from rest_framework.response import Response
 
 from reactions.api.base import Endpoint, read_input
+from reactions.api.openapi import described
 from reactions.api.outputs import REFUSALS, ReactionOutput, ReactionPage
 from reactions.api.paging import PAGE_PARAMETERS, answer_in_pages
 from reactions.api.showing import show_reaction, show_summary
@@ -70,7 +71,7 @@ def _kind(field: dict[str, Any], named: dict[str, Any]) -> dict[str, Any]:
 class Reactions(Endpoint):
     """The search, and planning a reaction."""
 
-    @extend_schema(
+    @described(
         operation_id="reactions_find",
         parameters=[*_search_parameters(), *PAGE_PARAMETERS],
         responses={200: ReactionPage, **REFUSALS},
@@ -81,7 +82,7 @@ class Reactions(Endpoint):
         hits = find(query, self.person).select_related("campaign", "addend", "created_by")
         return answer_in_pages(request, hits, show_summary)
 
-    @extend_schema(
+    @described(
         operation_id="reactions_plan",
         request=PlannedReaction,
         responses={201: ReactionOutput, **REFUSALS},
@@ -104,7 +105,7 @@ class Reactions(Endpoint):
 class OneReaction(Endpoint):
     """One reaction, whole."""
 
-    @extend_schema(operation_id="reactions_read", responses={200: ReactionOutput, **REFUSALS})
+    @described(operation_id="reactions_read", responses={200: ReactionOutput, **REFUSALS})
     def get(self, request: Request, label: str) -> Response:
         """Return everything that the record holds; its ETag is the version to send back."""
         return answer_with(find_reaction(self.person, label))
