@@ -1,4 +1,7 @@
+import json
+
 import pytest
+from django.urls import reverse
 
 pytestmark = pytest.mark.django_db
 
@@ -16,6 +19,34 @@ def test_the_parameters_are_those_of_the_page(api, three):
     found = api.get("/api/reactions/", {"substructure": "CCOC(=O)C"}).json()
     assert found["count"] == 3
     assert api.get("/api/reactions/", {"family": "prato"}).json()["count"] == 0
+
+
+@pytest.mark.parametrize(
+    "question",
+    [
+        "family=bingel",
+        "family=Cyclopropanation",
+        "family=prato&family=bingel",
+        "substructure=CCOC(%3DO)C",
+        "substructure=c1ccccc1",
+        "solvent=TOLUENE",
+        "cage=C70",
+        "state=planned&sort=-label",
+        "text=second",
+        "text=ACC-3",
+        "campaign=ACC&temperature_c_lowest=20",
+        "level_lowest=1",
+        "yield_percent_highest=40",
+        "performed_from=2026-01-01",
+        "sort=label",
+    ],
+)
+def test_the_api_finds_what_the_page_downloads(api, client, author, three, question):
+    client.force_login(author)
+    downloaded = client.get(f"{reverse('reactions:search-json')}?{question}")
+    page_says = json.loads(downloaded.getvalue())
+    found = api.get(f"/api/reactions/?{question}").json()
+    assert [row["label"] for row in found["results"]] == [row["label"] for row in page_says]
 
 
 def test_hits_come_in_pages(api, three):
