@@ -27,8 +27,6 @@ PLAN = {
 }
 READING = {"method": "hplc", "mole_fraction_by_level": {"0": 0.4, "1": 0.45, "2": 0.15}}
 
-pytestmark = pytest.mark.xdist_group("mounted")
-
 
 def test_the_wheel_holds_the_app_its_tables_and_its_parts_and_not_the_site(wheel):
     names = zipfile.ZipFile(wheel).namelist()
