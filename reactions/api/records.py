@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import re
-from typing import Any
+from typing import Annotated, Any
 
 from django.core.exceptions import ObjectDoesNotExist
 from drf_spectacular.utils import OpenApiParameter
@@ -16,19 +16,39 @@ from reactions.api.openapi import described
 from reactions.api.outputs import REFUSALS, ReactionOutput, ReactionPage
 from reactions.api.paging import PAGE_PARAMETERS, answer_in_pages
 from reactions.api.showing import show_reaction, show_summary
+from reactions.chemistry.distribution.request import Efficiency, ModelFields
+from reactions.chemistry.planning.objectives import Objective
 from reactions.errors import FieldErrors
 from reactions.models import Campaign, Reaction
 from reactions.search.query import SearchQuery, find
-from reactions.services.inputs import PlanInput
+from reactions.services.inputs import ModelInput, PlanInput, Share
 from reactions.services.planning import plan_reaction
 
 _LABEL = re.compile(r"([A-Z][A-Z0-9]{1,11})-([1-9]\d{0,8})\Z", re.ASCII)
+
+
+class PlannedModel(ModelFields):
+    """The composition model that the plan rests on, with the share of the reagent that adds."""
+
+    reagent_efficiency: Efficiency = 1.0
 
 
 class PlannedReaction(PlanInput):
     """A plan and the campaign it belongs to."""
 
     campaign: str = Field(min_length=2, max_length=12)
+    objective: Objective | None = None  # type: ignore[assignment]
+    composition_model: PlannedModel | None = None  # type: ignore[assignment]
+    predicted_composition: Annotated[list[Share], Field(max_length=201)] | None = None
+
+    def as_plan(self) -> PlanInput:
+        """Return the plan as the service takes it."""
+        values = {name: getattr(self, name) for name in PlanInput.model_fields}
+        values["objective"] = self.objective and self.objective.model_dump()
+        values["composition_model"] = self.composition_model and ModelInput(
+            **self.composition_model.model_dump()
+        )
+        return PlanInput(**values)
 
 
 def find_reaction(user: Any, label: str) -> Reaction:
@@ -95,10 +115,7 @@ class Reactions(Endpoint):
             raise FieldErrors.at(
                 "campaign", f"You are in no campaign “{planned.campaign}”; choose one of yours."
             )
-        plan = PlanInput.model_construct(
-            **{name: getattr(planned, name) for name in PlanInput.model_fields}
-        )
-        reaction = plan_reaction(self.person, campaign, plan)
+        reaction = plan_reaction(self.person, campaign, planned.as_plan())
         return answer_with(find_reaction(self.person, reaction.label), status=201)
 
 

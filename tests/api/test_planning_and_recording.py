@@ -83,6 +83,10 @@ def test_an_unusual_level_is_confirmed(api, campaign, plan):
         ({"lines": [{"role": "base", "name": "DBU", "purity": 1.2}]}, "lines.0.purity"),
         ({"lines": [{"role": "base", "name": "DBU", "smiles": "C(("}]}, "lines.0.smiles"),
         ({"colour": "brown"}, "colour"),
+        ({"objective": {"kind": "most_of_level", "level": None}}, "objective.level"),
+        ({"objective": {"kind": "best"}}, "objective"),
+        ({"composition_model": {"model": "guess"}}, "composition_model.model"),
+        ({"predicted_composition": [1.2]}, "predicted_composition.0"),
     ],
 )
 def test_bad_input_is_an_error_at_its_field(api, campaign, plan, change, field):
