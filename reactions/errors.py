@@ -75,7 +75,8 @@ def field_errors(error: ValidationError, data: Any = None) -> FieldErrors:
     """
     messages: dict[str, list[str]] = {}
     for detail in error.errors(include_url=False):
-        parts = detail["loc"] if data is None else _own_parts(detail["loc"], data)
+        is_missing = detail["type"] == "missing"
+        parts = detail["loc"] if data is None else _own_parts(detail["loc"], data, is_missing)
         path = ".".join(str(part) for part in parts) or WHOLE
         message = _message(dict(detail))
         if message not in messages.setdefault(path, []):
@@ -83,8 +84,8 @@ def field_errors(error: ValidationError, data: Any = None) -> FieldErrors:
     return FieldErrors(messages)
 
 
-def _own_parts(parts: tuple[int | str, ...], data: Any) -> list[int | str]:
-    """Return the parts of a path that lead through ``data``, and a last one that it lacks."""
+def _own_parts(parts: tuple[int | str, ...], data: Any, is_missing: bool) -> list[int | str]:
+    """Return the parts of a path that lead through ``data``, and a last one that is missing."""
     own: list[int | str] = []
     node = data
     for place, part in enumerate(parts):
@@ -93,7 +94,7 @@ def _own_parts(parts: tuple[int | str, ...], data: Any) -> list[int | str]:
         )
         if leads_on:
             node = node[part]
-        elif not (isinstance(node, Mapping) and place == len(parts) - 1):
+        elif not (is_missing and isinstance(node, Mapping) and place == len(parts) - 1):
             continue
         own.append(part)
     return own
