@@ -39,3 +39,13 @@ def test_the_addends_of_ones_campaigns(api, planned):
     found = api.get("/api/addends/").json()
     assert [row["formula"] for row in found["results"]] == ["C7H10O4"]
     assert (found["count"], found["next"]) == (1, None)
+
+
+def test_a_family_as_it_is_given_can_be_defined_under_another_key(api, campaign):
+    given = next(row for row in api.get("/api/families/").json() if row["key"] == "bingel")
+    own = {**given, "key": "own_bingel", "name": "Own cyclopropanation"}
+    answer = api.post("/api/families/", own, format="json")
+    assert answer.status_code == 201, answer.content
+    assert answer.json() == own
+    assert own in api.get("/api/families/").json()
+    assert list(api.post("/api/families/", own, format="json").json()["errors"]) == ["key"]
