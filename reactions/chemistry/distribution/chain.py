@@ -6,13 +6,13 @@ A pure-birth process; the equation and its rates are the project's own model of 
 the independent-sites law as its case f = 1.
 
 The chain is linear and bidiagonal, so x(τ) is the first row of exp(Aτ). Rates may differ by many
-powers of ten and may coincide, which rules out integration in steps and divided differences. Used
-here is uniformisation for a short time h followed by squaring: every entry is a sum of products of
-positive numbers, so nothing cancels, and each diagonal entry is set to its exact exp(−r_k t) at
-every squaring. An entry d places off the diagonal then has a relative error of about d·s·2⁻⁵² at
-most after s squarings, and of a few times 2⁻⁵² as measured against exact arithmetic (Moler, Van
-Loan, SIAM Rev. 2003, 45, 3, on scaling and squaring; Grassmann, Comput. Oper. Res. 1977, 4, 47, on
-uniformisation; both from memory).
+powers of ten and may coincide, which rules out integration in steps and divided differences. Short
+exposures are counted in jumps (``jumps``). Beyond them uniformisation for a short time h is
+followed by squaring: every entry is a sum of products of positive numbers, so nothing cancels, and
+each diagonal entry is set to its exact exp(−r_k t) at every squaring. An entry d places off the
+diagonal then has a relative error of about d·s·2⁻⁵² at most after s squarings, and of a few times
+2⁻⁵² as measured against exact arithmetic (Moler, Van Loan, SIAM Rev. 2003, 45, 3, on scaling and
+squaring; Grassmann, Comput. Oper. Res. 1977, 4, 47, on uniformisation; both from memory).
 """
 
 from __future__ import annotations
@@ -25,7 +25,9 @@ from collections.abc import Callable, Iterator
 import numpy as np
 from numpy.typing import NDArray
 
-from reactions.chemistry.distribution.roots import root_between
+from reactions.chemistry.distribution.closed_forms import normalised
+from reactions.chemistry.distribution.jumps import JumpChain
+from reactions.chemistry.distribution.roots import FINEST, root_between
 
 FloatArray = NDArray[np.float64]
 
@@ -44,7 +46,6 @@ _TERMS = 8
 _DIGITS = 53
 # Squares of the first places are kept; beyond them lie exposures that no chemist waits for.
 _PLACES_KEPT = 64
-_FINEST = 4 * float(np.finfo(np.float64).eps)
 
 
 def rates(sites: int, attenuation: float | tuple[float, ...]) -> FloatArray:
@@ -75,13 +76,29 @@ class BirthChain:
         self._fastest = float(chain_rates.max())
         self._place_of_one = -math.floor(math.log2(_SHORT / self._fastest))
         self._short = 2.0**-self._place_of_one
-        self._kept = [self._first()]
+        self._jumps = JumpChain(chain_rates)
+        self._kept: list[FloatArray] = []
 
     def compositions(self, exposures: FloatArray) -> FloatArray:
-        """Return x(τ) for each exposure τ from 0 to 10²⁰⁰, one row each, shape (points, K+1).
+        """Return x(τ) for each exposure τ from 0 to 10²⁰⁰, one row each, shape (points, K+1)."""
+        found = np.empty((len(exposures), len(self._rates)))
+        is_short = exposures <= self._jumps.longest
+        if is_short.any():
+            found[is_short] = self._jumps.compositions(exposures[is_short])
+        if not is_short.all():
+            found[~is_short] = self._after_long(exposures[~is_short])
+        return found
 
-        An exposure is a sum of a rest below h and of h·2^place, one for each binary digit.
+    def crossing(self, function: Callable[[FloatArray], float]) -> float:
+        """Return the exposure at which ``function`` of the composition turns negative.
+
+        It must be positive at first, and once negative stay so. Infinity where it never turns.
         """
+        early = self._jumps.crossing(function)
+        return self._late_crossing(function) if early is None else early
+
+    def _after_long(self, exposures: FloatArray) -> FloatArray:
+        """Return x(τ) where an exposure is a rest below h, and h·2^place for each binary digit."""
         rows = np.zeros((len(exposures), len(self._rates)))
         rows[:, 0] = 1.0
         rows = self._advanced(rows, np.fmod(exposures, self._short))
@@ -95,43 +112,31 @@ class BirthChain:
             chosen = is_set & (digit >= 0)
             if chosen.any():
                 rows[chosen] = rows[chosen] @ power
-        return _normalised(rows)
+        return normalised(rows)
 
-    def crossing(self, function: Callable[[FloatArray], float]) -> float:
-        """Return the exposure at which ``function`` of the composition turns negative.
+    def _late_crossing(self, function: Callable[[FloatArray], float]) -> float:
+        """Return a crossing after the first h, or infinity.
 
-        It must be positive at first, and once negative stay so. Infinity where it never turns.
         Digit after digit of the exposure is found, so that each costs one product.
         """
         passed: deque[FloatArray] = deque(maxlen=_DIGITS + 1)
         place = 0
         for place, power in enumerate(self._powers()):
-            if function(_normalised(power[:1])[0]) <= 0:
+            if function(normalised(power[:1])[0]) <= 0:
                 break
             if place - self._place_of_one > math.log2(LONGEST_EXPOSURE):
                 return math.inf
             passed.append(power)
-        if not passed:
-            return self._early_crossing(function)
         row, place = passed.pop()[:1], place - 1
         exposure = self._short * 2.0**place
         while passed:
             place -= 1
             trial = row @ passed.pop()
-            if function(_normalised(trial)[0]) > 0:
+            if function(normalised(trial)[0]) > 0:
                 row, exposure = trial, exposure + self._short * 2.0**place
         if place > 0:
             return exposure
         return exposure + self._rest(function, row, exposure)
-
-    def _early_crossing(self, function: Callable[[FloatArray], float]) -> float:
-        """Return the crossing within the first h, to full relative accuracy."""
-        start = np.eye(1, len(self._rates))
-        at = self._along(function, start)
-        lower = self._short / 2
-        while at(lower) <= 0:
-            lower /= 2
-        return root_between(at, lower, 2 * lower, absolute=1e-300, relative=_FINEST)
 
     def _rest(
         self, function: Callable[[FloatArray], float], row: FloatArray, exposure: float
@@ -140,18 +145,20 @@ class BirthChain:
         at = self._along(function, row)
         if at(self._short) >= 0:
             return self._short
-        return root_between(at, 0.0, self._short, absolute=_FINEST * exposure, relative=_FINEST)
+        return root_between(at, 0.0, self._short, absolute=FINEST * exposure, relative=FINEST)
 
     def _along(
         self, function: Callable[[FloatArray], float], row: FloatArray
     ) -> Callable[[float], float]:
         def at(duration: float) -> float:
-            return function(_normalised(self._advanced(row, np.array([duration])))[0])
+            return function(normalised(self._advanced(row, np.array([duration])))[0])
 
         return at
 
     def _powers(self) -> Iterator[FloatArray]:
         """Yield exp(A·h·2^place) for place 0, 1, 2 … without end."""
+        if not self._kept:
+            self._kept.append(self._first())
         power = self._kept[0]
         for place in itertools.count():
             if place < len(self._kept):
@@ -189,8 +196,3 @@ class BirthChain:
             total += weight * power
         advanced: FloatArray = np.exp(-scaled) * total
         return advanced
-
-
-def _normalised(rows: FloatArray) -> FloatArray:
-    normalised: FloatArray = rows / rows.sum(axis=1, keepdims=True)
-    return normalised

@@ -26,7 +26,7 @@ def binomial(sites: int, reacted: FloatArray, unreacted: FloatArray) -> FloatArr
         terms = (
             choices * reacted[:, np.newaxis] ** levels * unreacted[:, np.newaxis] ** levels[::-1]
         )
-    return _normalised(terms)
+    return normalised(terms)
 
 
 def poisson(sites: int, means: FloatArray) -> FloatArray:
@@ -41,24 +41,34 @@ def poisson(sites: int, means: FloatArray) -> FloatArray:
     counted = means < limit
     rows[~counted, sites] = 1.0
     if counted.any():
-        rows[counted] = _poisson_terms(sites, means[counted])
+        rows[counted] = _cut(sites, means[counted])
     return rows
 
 
-def _poisson_terms(sites: int, means: FloatArray) -> FloatArray:
+def _cut(sites: int, means: FloatArray) -> FloatArray:
     """Return the terms up to N, the tail summed term by term into the last."""
-    highest = float(means.max())
-    length = max(sites, math.ceil(highest + 12 * math.sqrt(highest) + 40))
-    # Half of the terms' common factor e^(−m) before and half after, so that neither end overflows.
-    half = np.exp(-means / 2)[:, np.newaxis]
-    ratios = means[:, np.newaxis] / np.arange(1, length + 1)
-    with np.errstate(under="ignore"):
-        terms = half * np.cumprod(np.concatenate((half, ratios), axis=1), axis=1)
-    return _normalised(
+    terms = poisson_terms(means, max(sites, poisson_terms_needed(float(means.max()))))
+    return normalised(
         np.concatenate((terms[:, :sites], terms[:, sites:].sum(axis=1, keepdims=True)), axis=1)
     )
 
 
-def _normalised(rows: FloatArray) -> FloatArray:
-    normalised: FloatArray = rows / rows.sum(axis=1, keepdims=True)
-    return normalised
+def poisson_terms_needed(mean: float) -> int:
+    """Return up to which k the terms m^k e^(−m) / k! matter: all beyond it is below 10⁻³⁵."""
+    return math.ceil(mean + 12 * math.sqrt(mean) + 40)
+
+
+def poisson_terms(means: FloatArray, highest: int) -> FloatArray:
+    """Return m^k e^(−m) / k! for k = 0 … ``highest``, one row for each mean m (0 to 1,000)."""
+    # Half of the terms' common factor e^(−m) before and half after, so that neither end overflows.
+    half = np.exp(-means / 2)[:, np.newaxis]
+    ratios = means[:, np.newaxis] / np.arange(1, highest + 1)
+    with np.errstate(under="ignore"):
+        terms: FloatArray = half * np.cumprod(np.concatenate((half, ratios), axis=1), axis=1)
+    return terms
+
+
+def normalised(rows: FloatArray) -> FloatArray:
+    """Return each row divided by its sum."""
+    shares: FloatArray = rows / rows.sum(axis=1, keepdims=True)
+    return shares

@@ -22,12 +22,11 @@ from reactions.chemistry.distribution.chain import (
     rates,
 )
 from reactions.chemistry.distribution.closed_forms import binomial, poisson
-from reactions.chemistry.distribution.roots import root_between
+from reactions.chemistry.distribution.roots import falling_root
 
 ModelName = Literal["independent_sites", "poisson", "sequential"]
 # At first m = τ, for r_0 = 1; what later additions add is less than a float tells up to here.
 _BEGINNING = 1e-20
-_FINEST = 4 * float(np.finfo(np.float64).eps)
 
 
 @dataclass(frozen=True)
@@ -148,15 +147,8 @@ class CompositionModel:
         def at(exposure: float) -> float:
             return function(self.composition(exposure))
 
-        upper = 1.0
-        while at(upper) > 0:
-            upper *= 2
-            if upper > LONGEST_EXPOSURE:
-                return math.inf
-        lower = upper / 2
-        while at(lower) <= 0:
-            upper, lower = lower, lower / 2
-        return root_between(at, lower, upper, absolute=1e-300, relative=_FINEST)
+        found = falling_root(at, 1.0, LONGEST_EXPOSURE)
+        return math.inf if found is None else found
 
     @cached_property
     def _chain(self) -> BirthChain:
