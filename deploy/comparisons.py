@@ -14,7 +14,7 @@ from pathlib import Path
 
 import numpy as np
 from scipy.integrate import solve_ivp
-from scipy.stats import binom
+from scipy.stats import binom, poisson
 
 sys.path.insert(0, str(Path(__file__).parents[1]))
 
@@ -31,20 +31,21 @@ _LEAST_S = 0.05
 Work = Callable[[], object]
 
 
-def _chain(sites: int, attenuation: float) -> Work:
-    return lambda: CompositionModel("sequential", sites, attenuation).composition(2.5)
+def _chain(sites: int, attenuation: float, exposure: float) -> Work:
+    return lambda: CompositionModel("sequential", sites, attenuation).composition(exposure)
 
 
-def _lsoda(sites: int, attenuation: float) -> Work:
-    rates = (sites - np.arange(sites + 1)) / sites * attenuation ** np.arange(sites + 1)
+def _lsoda(sites: int, attenuation: float, exposure: float) -> Work:
+    levels = np.arange(sites + 1.0)
+    rates = (sites - levels) / sites * np.power(attenuation, levels)
     start = np.eye(1, sites + 1).ravel()
 
     def slope(_time: float, shares: np.ndarray) -> np.ndarray:
-        change = -rates * shares
+        change: np.ndarray = -rates * shares
         change[1:] += rates[:-1] * shares[:-1]
         return change
 
-    return lambda: solve_ivp(slope, (0, 2.5), start, method="LSODA", rtol=1e-12, atol=1e-15)
+    return lambda: solve_ivp(slope, (0, exposure), start, method="LSODA", rtol=1e-12, atol=1e-15)
 
 
 def _plan(model: str) -> Work:
@@ -63,8 +64,8 @@ def _plan_and_curve() -> Work:
     return lambda: (planned(), curve(drawn))
 
 
-def _binomial() -> Work:
-    request = DistributionRequest(model="independent_sites", sites=30, uptake=1.5)
+def _composition(model: str, sites: int) -> Work:
+    request = DistributionRequest(model=model, sites=sites, uptake=1.5)
     return lambda: distribution(request)
 
 
@@ -79,9 +80,28 @@ def _amounts() -> Work:
 
 
 COMPARISONS: dict[str, tuple[Work, Work | None, str]] = {
-    "chain-30": (_chain(30, 0.85), _lsoda(30, 0.85), "scipy LSODA at rtol 1e-12"),
-    "chain-200": (_chain(200, 0.97), _lsoda(200, 0.97), "scipy LSODA at rtol 1e-12"),
-    "binomial-30": (_binomial(), lambda: binom.pmf(np.arange(31), 30, 0.05), "scipy.stats.binom"),
+    "chain-30": (_chain(30, 0.85, 2.5), _lsoda(30, 0.85, 2.5), "scipy LSODA at rtol 1e-12"),
+    "chain-200": (_chain(200, 0.97, 2.5), _lsoda(200, 0.97, 2.5), "scipy LSODA at rtol 1e-12"),
+    "chain-200-long": (
+        _chain(200, 0.97, 2500),
+        _lsoda(200, 0.97, 2500),
+        "scipy LSODA at rtol 1e-12",
+    ),
+    "binomial-30": (
+        _composition("independent_sites", 30),
+        lambda: binom.pmf(np.arange(31), 30, 1.5 / 30),
+        "scipy.stats.binom",
+    ),
+    "binomial-200": (
+        _composition("independent_sites", 200),
+        lambda: binom.pmf(np.arange(201), 200, 1.5 / 200),
+        "scipy.stats.binom",
+    ),
+    "poisson-200": (
+        _composition("poisson", 200),
+        lambda: poisson.pmf(np.arange(201), 1.5),
+        "scipy.stats.poisson",
+    ),
     "plan-independent": (_plan("independent_sites"), None, ""),
     "plan-sequential": (_plan("sequential"), None, ""),
     "plan-and-curve": (_plan_and_curve(), None, ""),

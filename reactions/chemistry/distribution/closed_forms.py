@@ -6,6 +6,7 @@ Relative error at most about 2·N·2⁻⁵³, below 5·10⁻¹⁴ for N = 200, b
 from __future__ import annotations
 
 import math
+from functools import cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -21,12 +22,21 @@ def binomial(sites: int, reacted: FloatArray, unreacted: FloatArray) -> FloatArr
     distribution.
     """
     levels = np.arange(sites + 1)
-    choices = np.array([math.comb(sites, level) for level in range(sites + 1)], dtype=np.float64)
     with np.errstate(under="ignore"):
         terms = (
-            choices * reacted[:, np.newaxis] ** levels * unreacted[:, np.newaxis] ** levels[::-1]
+            _choices(sites)
+            * reacted[:, np.newaxis] ** levels
+            * unreacted[:, np.newaxis] ** levels[::-1]
         )
     return normalised(terms)
+
+
+@cache
+def _choices(sites: int) -> FloatArray:
+    """Return C(N,k) for k = 0…N; the array is not to be written to."""
+    choices = np.array([math.comb(sites, level) for level in range(sites + 1)], dtype=np.float64)
+    choices.flags.writeable = False
+    return choices
 
 
 def poisson(sites: int, means: FloatArray) -> FloatArray:
