@@ -1,8 +1,8 @@
 """Molar masses and formulas, from the structure or from the formula.
 
 Average masses use RDKit's table of standard atomic weights (IUPAC abridged values: C 12.011,
-H 1.008, N 14.007, O 15.999); monoisotopic masses use the most abundant isotope of each element.
-The mass of electrons lost or gained by ions is left out (0.0005 per charge).
+H 1.008, N 14.007, O 15.999); monoisotopic masses use the most abundant isotope of each element, and
+of an ion they count the electrons (0.00055 each) that it lacks or has beyond its atoms'.
 """
 
 from __future__ import annotations
