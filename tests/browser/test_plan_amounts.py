@@ -139,6 +139,32 @@ def test_an_addend_is_drawn_and_bonded_to_the_cage(logged_in_page, width):
     expect(shown).to_contain_text("1 cage carbon")
 
 
+def test_two_presses_on_the_same_place_give_one_atom_both_bonds_to_the_cage(page):
+    choose_bingel(page)
+    field = page.get_by_label("Addend", exact=True)
+    page.get_by_role("button", name="Draw").click()
+    page.locator("[data-canvas] canvas").first.wait_for()
+    page.evaluate("document.querySelector('[data-canvas]').scrollIntoView({block: 'center'})")
+    canvas = page.locator("[data-canvas] canvas")
+    tools, area = canvas.nth(0).bounding_box(), canvas.nth(1).bounding_box()
+    page.mouse.click(
+        tools["x"] + tools["width"] / 4, tools["y"] + 5.5 * tools["height"] / _TOOL_ROWS
+    )
+    # A drawing far from the middle, and larger than the editor would have it.
+    left, top = area["x"] + 60, area["y"] + 60
+    for start, end in ([(0, 0), (50, 0)], [(50, 0), (50, 50)]):
+        page.mouse.move(left + start[0], top + start[1])
+        page.mouse.down()
+        page.mouse.move(left + end[0], top + end[1], steps=3)
+        page.mouse.up()
+    expect(field).to_have_value("CCC")
+    page.get_by_role("button", name="Attach to the cage").click()
+    middle = area["x"] + area["width"] / 2, area["y"] + area["height"] / 2
+    for _ in range(2):
+        page.mouse.click(middle[0] + 8, middle[1] - 8)
+    expect(field).to_have_value("*C(*)(C)C")
+
+
 def test_a_typed_addend_is_drawn_again_when_the_drawing_is_opened(page):
     field = page.get_by_label("Addend", exact=True)
     field.fill("*C(*)(C(=O)OC)C(=O)OC")

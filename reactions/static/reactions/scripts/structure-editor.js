@@ -34,6 +34,9 @@ class StructureEditor {
   setAttaching(on) {
     this.attachButton?.setAttribute("aria-pressed", String(on));
     this.canvas.toggleAttribute("data-attaching", on);
+    // Fits the drawing now, or the first attachment would do it, and a second press on the same
+    // place would meet another atom.
+    if (on && this.editor?.getMolecule().getAllAtoms()) this.editor.moleculeChanged();
   }
 
   async toggle() {
@@ -149,6 +152,7 @@ function nearestAtom(molecule, x, y, within) {
   let nearest = -1;
   let least = within;
   for (let atom = 0; atom < molecule.getAllAtoms(); atom += 1) {
+    if (molecule.getAtomicNo(atom) === NO_ELEMENT) continue; // the cage itself
     const away = Math.hypot(molecule.getAtomX(atom) - x, molecule.getAtomY(atom) - y);
     if (away < least) [nearest, least] = [atom, away];
   }
