@@ -50,15 +50,18 @@ def format_temperature(temperature_c: float, figures: int = SHOWN) -> str:
 
 
 def format_duration(duration_min: float, figures: int = SHOWN) -> str:
-    """Show a time in minutes as ``90 min`` below 2 h, else in parts such as ``4 h 10 min``.
+    """Show a time in minutes in parts such as ``4 h 10 min``; hours from 2 h on, days from 3 d on.
 
-    Parts show the time to six figures at least, so that minutes are not lost in days.
+    Parts show the time to eight figures at least, so that seconds are not lost in days; below a
+    minute it is shown in seconds to the figures asked for.
     """
-    if duration_min < _HOURS_FROM_MIN:
-        return f"{_figures(duration_min, figures)} min"
-    hours, minutes = divmod(Decimal(f"{duration_min:.{max(figures, 6)}g}"), 60)
+    if duration_min == 0:
+        return "0 min"
+    shown = figures if duration_min < 1 else max(figures, 8)
+    minutes, seconds = divmod(Decimal(f"{60 * duration_min:.{shown}g}"), 60)
+    hours, minutes = divmod(minutes, 60) if minutes >= _HOURS_FROM_MIN else (Decimal(0), minutes)
     days, hours = divmod(hours, 24) if hours >= _DAYS_FROM_H else (Decimal(0), hours)
-    parts = ((days, "d"), (hours, "h"), (minutes, "min"))
+    parts = ((days, "d"), (hours, "h"), (minutes, "min"), (seconds, "s"))
     return " ".join(f"{_plain(count)} {unit}" for count, unit in parts if count)
 
 

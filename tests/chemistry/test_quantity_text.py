@@ -76,6 +76,11 @@ def test_volumes_are_shown_in_the_unit_of_the_glass(volume, shown):
         (4325.0, "3 d 5 min"),
         (12345.0, "8 d 13 h 45 min"),
         (179.9999999, "3 h"),
+        (1 / 3, "20 s"),
+        (0.01, "0.6 s"),
+        (1.5, "1 min 30 s"),
+        (100 / 60, "1 min 40 s"),
+        (14400.0 + 1 / 6, "10 d 10 s"),
     ],
 )
 def test_times_are_shown_as_people_say_them(minutes, shown):
@@ -101,6 +106,14 @@ def test_what_is_shown_reads_back_to_the_figures_shown(pair, value):
 def test_what_a_person_typed_reads_back_exactly_at_full_figures(pair, value):
     shown, read = pair
     assert read(shown(value, EXACT)) == value
+
+
+@given(st.integers(0, 10**7))
+def test_seconds_read_back_exactly(seconds):
+    minutes = duration_min(f"{seconds} s")
+
+    assert duration_min(format_duration(minutes, EXACT)) == minutes
+    assert duration_min(format_duration(minutes)) == minutes
 
 
 @given(st.decimals(min_value=0, max_value=1, places=6, allow_nan=False).map(float))
