@@ -143,3 +143,38 @@ def test_the_second_person_loses_no_step(store, planned, signed_in, second_autho
 def test_only_authors_write(request, signed_in, planned, sheet_of, who):
     client = signed_in(request.getfixturevalue(who))
     assert client.post(sheet_of(planned, "isolation"), typed(({}, [MONO]))).status_code == 403
+
+
+@pytest.mark.parametrize("eluent", ["CS2/hexane 1:1", "hexane, carbon disulfide 5 %", "CS2"])
+def test_the_solvents_of_isolation_are_cautioned_against(
+    store, signed_in, author, planned, sheet_of, eluent
+):
+    store(typed(({"solvent": eluent}, [])))
+    sheet = signed_in(author).get(sheet_of(planned)).context["record"].cautions
+    assert "carbon_disulfide" in {caution.key for caution in sheet.rules}
+    assert not sheet.unlisted
+
+
+def test_an_eluent_that_is_not_listed_is_named_so(store, signed_in, author, planned, sheet_of):
+    store(typed(({"solvent": "toluene → house blend 7"}, [])))
+    assert signed_in(author).get(sheet_of(planned)).context["record"].cautions.unlisted == (
+        "house blend 7",
+    )
+
+
+def test_conversion_and_yields_say_what_they_rest_on(store, signed_in, author, planned, sheet_of):
+    store(typed(({}, [CAGE, MONO])))
+    sheet = signed_in(author).get(sheet_of(planned)).content.decode()
+    assert "Conversion of the cage, by recovered cage" in sheet
+    data = {"readings-method": "hplc", "readings-scale": "percent", "readings-level_0": "60"}
+    signed_in(author).post(sheet_of(planned, "readings"), data | {"seen_version": "2"})
+    sheet = signed_in(author).get(sheet_of(planned)).content.decode()
+    assert "Conversion of the cage, by the latest reading" in sheet
+    assert "Yield on consumed cage, by recovered cage" in sheet
+
+
+def test_a_fraction_of_which_only_the_purity_is_typed_is_asked_for_its_mass(store):
+    response = store(typed(({}, [{"purity": "97 %"}])))
+    assert response.status_code == 422
+    (fraction,) = form_of(response).steps[0].fractions
+    assert fraction.errors["mass_mg"] == ["Give the mass with its unit, such as 41 mg."]

@@ -121,3 +121,17 @@ def test_only_authors_write(request, signed_in, planned, sheet_of, who):
     assert client.post(sheet_of(planned, "readings"), typed("50")).status_code == 403
     address = reverse("reactions:preview-reading", args=["ACC", planned.number])
     assert client.post(address, typed("50")).status_code == 403
+
+
+def test_fractions_typed_under_percent_are_questioned(add, planned):
+    response = add(typed("0.71", "0.245", "0.04", "0.005"))
+    assert response.status_code == 422
+    form = response.context["parts"]["readings"].form
+    assert "sum to 1 %" in form.errors["scale"][0]
+    assert form["level_0"].value() == "0.71"
+    assert not planned.readings.exists()
+
+
+def test_a_trace_beside_a_main_level_is_taken(add, planned):
+    assert add(typed("99.5", "0.5 %")).status_code == 302
+    assert composition(planned) == pytest.approx({0: 0.995, 1: 0.005})

@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Sequence
+import re
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import replace
 
 from reactions.bounded import run_bounded
@@ -14,15 +15,22 @@ from reactions.chemistry.cautions import (
 )
 from reactions.chemistry.families import Family
 from reactions.chemistry.structures import StructureError
-from reactions.models import Component, ComponentRole, Reaction
+from reactions.models import Component, ComponentRole, IsolationStep, Reaction
 
 _ACTS_ON_THE_CAGE = (ComponentRole.REAGENT,)
 
+# What stands between the names of a mixed eluent, and its ratio: “CS2/hexane 1:1”.
+_BETWEEN_NAMES = re.compile(r"\s*(?:/|;|\+|→|,\s|\bthen\b|\band\b|\bto\b|\bin\b)\s*")
+_RATIO = re.compile(r"[(]?\b\d+([.,]\d+)?(\s*%|(\s*:\s*\d+([.,]\d+)?)+)( v/v)?[)]?")
+
 
 def cautions_of(
-    reaction: Reaction, components: Sequence[Component], family: Family | None
+    reaction: Reaction,
+    components: Sequence[Component],
+    family: Family | None,
+    steps: Iterable[IsolationStep] = (),
 ) -> CautionSheet:
-    """Return the cautions of what is on the weighing list and in the conditions."""
+    """Return the cautions of the weighing list, the conditions and the solvents of isolation."""
     cage = next((row for row in components if row.role == ComponentRole.CAGE), None)
     conditions = PlannedConditions(
         solvent=reaction.solvent or None,
@@ -36,6 +44,7 @@ def cautions_of(
         family=family,
     )
     substances = [_planned(row) for row in components]
+    substances += [PlannedSubstance(name, None) for step in steps for name in named(step.solvent)]
     try:
         return run_bounded(cautions_for, substances, conditions)
     except StructureError:
@@ -50,6 +59,13 @@ def _planned(row: Component) -> PlannedSubstance:
         role=row.role,
         mass_mg=_first(row.actual_mass_mg, row.planned_mass_mg),
     )
+
+
+def named(solvent: str) -> Iterator[str]:
+    """Yield each solvent that a mixture names, without the ratio."""
+    for part in _BETWEEN_NAMES.split(_RATIO.sub(" ", solvent)):
+        if name := part.strip(" ,.()"):
+            yield name
 
 
 def _reagent_equivalents(components: Iterable[Component]) -> float | None:

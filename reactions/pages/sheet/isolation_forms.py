@@ -32,6 +32,9 @@ class FractionForm(SheetForm):
         min_value=0,
         max_value=HIGHEST_LEVEL,
         label="Level",
+        error_messages={
+            "invalid": "Give one whole number, such as 2; leave it blank for a mixture of levels."
+        },
         widget=forms.TextInput(attrs={"inputmode": "numeric", "placeholder": "not known"}),
     )
     purity = share_field(label="Purity")
@@ -52,7 +55,7 @@ class FractionForm(SheetForm):
     @property
     def is_empty(self) -> bool:
         """Return whether nothing was typed."""
-        return not any(self[name].value() for name in ("name", "mass_mg", "level"))
+        return not any(self[name].value() for name in ("name", "mass_mg", "level", "purity"))
 
     def values(self) -> dict[str, Any]:
         """Return what was typed; a purity left out is 100 %."""

@@ -24,6 +24,9 @@ from reactions.services.run import add_reading
 _OWN_FIELD = 7
 _FURTHER = 4
 
+# Fractions that sum to 1, read as percent, with as much again for what overlaps.
+_TAKEN_FOR_FRACTIONS = 0.02
+
 
 @dataclass(frozen=True)
 class LevelField:
@@ -108,8 +111,19 @@ class ReadingForm(SheetForm):
             self._take(shares, further, share_name)
         if not shares and not self.errors:
             self.add_error(None, "Give the share of at least one level.")
+        self._question_scale(shares)
         cleaned["mole_fraction_by_level"] = shares
         return cleaned
+
+    def _question_scale(self, shares: dict[int, float]) -> None:
+        """Refuse percents that sum to about 1: they are fractions read on the wrong scale."""
+        total = sum(shares.values())
+        if self.cleaned_data.get("scale") == "percent" and 0 < total <= _TAKEN_FOR_FRACTIONS:
+            self.add_error(
+                "scale",
+                f"In percent these sum to {100 * total:.3g} % of the cages. Choose “fractions of "
+                "1”, or give the shares in percent.",
+            )
 
     def _take(self, shares: dict[int, float], level: int, name: str) -> None:
         text = self.cleaned_data.get(name)

@@ -31,7 +31,7 @@ from reactions.pages.sheet.cautions import cautions_of
 from reactions.pages.sheet.changes import DescribedRevision, described
 from reactions.pages.sheet.plan_words import model_in_words, objective_in_words
 from reactions.pages.structure.showing import drawn
-from reactions.services.found import balance_of, composition_of
+from reactions.services.found import balance_of, composition_of, latest_reading
 from reactions.services.states import digest_of
 
 _DRAWING_WIDTH, _DRAWING_HEIGHT = 220, 130
@@ -159,6 +159,16 @@ class Record:
             row.reading.is_higher_lumped for row in self.readings if row.composition == found
         )
 
+    @property
+    def conversion_rests_on(self) -> str:
+        """Return in words what the conversion was computed from; empty where there is none."""
+        if self.reaction.conversion is None:
+            return ""
+        reading = latest_reading(self.reaction)
+        if reading is not None and any(row.level == 0 for row in reading.levels.all()):
+            return "by the latest reading"
+        return "by recovered cage"
+
     @cached_property
     def steps(self) -> list[IsolationStep]:
         """Return the isolation steps with their fractions."""
@@ -204,7 +214,7 @@ class Record:
     @cached_property
     def cautions(self) -> CautionSheet:
         """Return the cautions of what is on the sheet."""
-        return cautions_of(self.reaction, self.components, self.family)
+        return cautions_of(self.reaction, self.components, self.family, self.steps)
 
     @cached_property
     def volume_advice(self) -> VolumeAdvice | None:
