@@ -163,7 +163,8 @@ def _worked_out(
         }
         for name, value in figures.items():
             field = "equivalents" if name in {"mmol", "mass_mg", "volume_ml"} else name
-            _check_size(value, name.rpartition("_")[2], line.name, f"lines.{place}.{field}")
+            unit = name.rpartition("_")[2].replace("ml", "mL")
+            _check_size(value, unit, line.name, f"lines.{place}.{field}")
         known = {**line.model_dump(), "molar_mass_g_per_mol": substance.molar_mass_g_per_mol}
         lines.append(AmountsResultLine(**{**known, **figures}))
     return lines

@@ -4,15 +4,9 @@ from __future__ import annotations
 
 from typing import Annotated
 
-from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, model_validator
+from pydantic import BaseModel, ConfigDict, Field, model_validator
 
-
-def _no_percent(value: object) -> object:
-    """Refuse a share that was meant in percent, before a limit refuses it with less to say."""
-    if isinstance(value, (int, float)) and 1 < value <= 100:
-        raise ValueError(f"{value:g} is more than 1; write {value / 100:g} for {value:g} %.")
-    return value
-
+from reactions.chemistry.shares import Share
 
 DEFAULT_MARGIN = 1.25
 LARGEST = 1e9  # of any mass (mg), volume (mL) or amount (mmol)
@@ -23,7 +17,6 @@ _Needed = Annotated[float, Field(gt=0, le=1e6, allow_inf_nan=False)]
 _MolarMass = Annotated[float, Field(gt=0, le=1e6, allow_inf_nan=False)]
 _Density = Annotated[float, Field(gt=0, le=30, allow_inf_nan=False)]
 _Molarity = Annotated[float, Field(gt=0, le=100, allow_inf_nan=False)]
-_Share = Annotated[float, BeforeValidator(_no_percent), Field(gt=0, le=1, allow_inf_nan=False)]
 _Margin = Annotated[float, Field(ge=1, le=100, allow_inf_nan=False)]
 _Name = Annotated[str, Field(min_length=1, max_length=200)]
 _Smiles = Annotated[str, Field(max_length=2000)]
@@ -55,7 +48,7 @@ class _LineFields(_Value):
     equivalents: _Equivalents | None = None
     equivalents_of: Annotated[str, Field(max_length=200)] | None = None
     needed_per_cage: _Needed | None = None
-    purity: _Share = 1.0
+    purity: Share = 1.0
     density_g_per_ml: _Density | None = None
     molarity_mol_per_l: _Molarity | None = None
     actual_mass_mg: _NotNegative | None = None
@@ -88,9 +81,9 @@ class AmountsRequest(_Value):
 
     cage: Annotated[str, Field(min_length=2, max_length=40)] = "C60"
     cage_mass_mg: _Positive | None = None
-    cage_purity: _Share = 1.0
+    cage_purity: Share = 1.0
     product_mass_mg: _Positive | None = None
-    expected_yield: _Share | None = None
+    expected_yield: Share | None = None
     product_molar_mass_g_per_mol: _MolarMass | None = None
     product_smiles: _Smiles | None = None
     actual_cage_mass_mg: _Positive | None = None

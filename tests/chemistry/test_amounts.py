@@ -275,6 +275,12 @@ def test_without_a_solvent_a_chosen_volume_stands():
         ([], {"cage": "buckyball"}, "cage", "“buckyball” is no cage"),
         ([malonate(equivalents=1e6, purity=1e-9)], {}, "lines.0.equivalents", "beyond anything"),
         (
+            [malonate(equivalents=1e6, molarity_mol_per_l=1e-9)],
+            {},
+            "lines.0.equivalents",
+            " mL, beyond anything",
+        ),
+        (
             [malonate(actual_mass_mg=1e9, purity=1e-300, molar_mass_g_per_mol=None)],
             {"actual_cage_mass_mg": 1e-300},
             "lines.0.equivalents",

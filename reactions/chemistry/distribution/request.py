@@ -8,7 +8,9 @@ from typing import Annotated
 from pydantic import (
     BaseModel,
     ConfigDict,
+    Discriminator,
     Field,
+    Tag,
     ValidationInfo,
     field_validator,
     model_validator,
@@ -16,10 +18,23 @@ from pydantic import (
 
 from reactions.chemistry.distribution.chain import FloatArray
 from reactions.chemistry.distribution.models import CompositionModel, ModelName, mono_to_multi
+from reactions.chemistry.shares import Share
 
 _Factor = Annotated[float, Field(ge=0, le=1e3, allow_inf_nan=False)]
 _NotNegative = Annotated[float, Field(ge=0, allow_inf_nan=False)]
-Efficiency = Annotated[float, Field(gt=0, le=1, allow_inf_nan=False)]
+_Factors = Annotated[list[_Factor], Field(min_length=1, max_length=200)]
+
+
+def _kind_of_attenuation(value: object) -> str:
+    return "factors" if isinstance(value, (list, tuple)) else "factor"
+
+
+# Told apart before it is looked at, so that a bad factor is not also refused as a bad list.
+_Attenuation = Annotated[
+    Annotated[_Factor, Tag("factor")] | Annotated[_Factors, Tag("factors")],
+    Discriminator(_kind_of_attenuation),
+]
+Efficiency = Share  # of the reagent charged, what ends on cages
 # Equivalents worked out from an uptake may bring it back this much too large, relatively.
 _ROUNDING = 1e-12
 
@@ -41,7 +56,7 @@ class ModelFields(Value):
 
     model: ModelName
     sites: Annotated[int, Field(ge=1, le=200)] = 30
-    attenuation: _Factor | Annotated[list[_Factor], Field(min_length=1, max_length=200)] = 1.0
+    attenuation: _Attenuation = 1.0
 
     @field_validator("attenuation")
     @classmethod
@@ -49,7 +64,8 @@ class ModelFields(Value):
         cls, attenuation: float | list[float], info: ValidationInfo
     ) -> float | list[float]:
         model, sites = info.data.get("model"), info.data.get("sites")
-        if model not in (None, "sequential") and attenuation != 1.0:
+        factors = attenuation if isinstance(attenuation, list) else [attenuation]
+        if model not in (None, "sequential") and any(factor != 1.0 for factor in factors):
             raise ValueError(
                 f"The model {model} knows no attenuation; choose sequential, or leave it out."
             )

@@ -25,6 +25,7 @@ from reactions.chemistry.planning.objectives import (
     wanted_levels,
 )
 from reactions.chemistry.planning.optimum import Optimum, best_of
+from reactions.chemistry.shares import Share
 
 # How far the reagent is varied to show how sharp an optimum is.
 _VARIATION = 0.05
@@ -43,7 +44,7 @@ class PlanRequest(ModelFields):
     reagent_efficiency: Efficiency = 1.0
     cage: Annotated[str, Field(min_length=2, max_length=40)] = "C60"
     cage_mass_mg: _Mass | None = None
-    cage_purity: Annotated[float, Field(gt=0, le=1, allow_inf_nan=False)] = 1.0
+    cage_purity: Share = 1.0
     addition_mass_g_per_mol: Annotated[float, Field(gt=0, le=1e5, allow_inf_nan=False)] | None = (
         None
     )

@@ -5,7 +5,7 @@ from __future__ import annotations
 import pytest
 from pydantic import ValidationError
 
-from reactions.chemistry.distribution import DistributionRequest
+from reactions.chemistry.distribution import DistributionRequest, distribution
 from reactions.errors import WHOLE, field_errors
 
 
@@ -85,7 +85,7 @@ def test_numbers_are_finite(field, number):
         fields["equivalents"] = 1.0
 
     (message,) = refusal(**fields)[field]
-    assert "finite" in message or "below 0" in message or "not above" in message
+    assert any(words in message for words in ("finite", "below 0", "not above", "above 1"))
 
 
 @pytest.mark.parametrize(
@@ -121,4 +121,31 @@ def test_attenuation_belongs_to_the_sequential_model():
         "attenuation": [
             "The model poisson knows no attenuation; choose sequential, or leave it out."
         ]
+    }
+
+
+@pytest.mark.parametrize("neutral", [1.0, [1.0], [1.0] * 30])
+def test_an_attenuation_that_attenuates_nothing_suits_any_model(neutral):
+    with_it = DistributionRequest(**INDEPENDENT, attenuation=neutral, uptake=1)
+
+    assert distribution(with_it) == distribution(DistributionRequest(**INDEPENDENT, uptake=1))
+
+
+@pytest.mark.parametrize(
+    ("attenuation", "path", "message"),
+    [
+        (-1, "attenuation", "-1 is below 0; give 0 or more."),
+        ("half", "attenuation", "“half” is not a number; write digits, such as 1.5."),
+        (None, "attenuation", "None is not a number; write digits, such as 1.5."),
+        ([0.5, -1], "attenuation.1", "-1 is below 0; give 0 or more."),
+        ([], "attenuation", "The list is too short; it needs at least 1."),
+    ],
+)
+def test_a_bad_attenuation_is_refused_once(attenuation, path, message):
+    assert refusal(model="sequential", uptake=1, attenuation=attenuation) == {path: [message]}
+
+
+def test_an_efficiency_meant_in_percent():
+    assert refusal(**INDEPENDENT, equivalents=1, reagent_efficiency=80) == {
+        "reagent_efficiency": ["80 is more than 1; write 0.8 for 80 %."]
     }
