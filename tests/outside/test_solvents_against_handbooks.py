@@ -158,6 +158,8 @@ def test_c60_in_methanol_has_two_published_values():
         ("benzonitrile", 0.41), ("carbon tetrachloride", 0.32), ("dichloromethane", 0.26),
         ("chloroform", 0.16), ("cyclohexane", 0.036), ("acetone", 0.001), ("ethanol", 0.001),
         ("decalins", 4.6), ("tribromomethane", 5.6), ("quinoline", 7.2),
+        ("1,2,4-trimethylbenzene", 17.9), ("1,2-dibromobenzene", 13.8), ("acetonitrile", 0),
+        ("tetrahydrofuran", 0),
     ],
 )  # fmt: skip
 def test_c60_in_the_solvents_of_the_table(name, mg_per_ml):
