@@ -70,6 +70,11 @@ PLANS: dict[str, tuple[Plan, Plan]] = {
         (["n-butyllithium"], {"atmosphere": "argon"}),
     ),
     "organolithium_water": ((["n-butyllithium", "water"], {}), (["lithium", "water"], {})),
+    "grignard_air": ((["phenylmagnesium bromide"], {}), (["magnesium"], {})),
+    "grignard_under_air": (
+        (["4-tert-butylphenylmagnesium bromide"], {"atmosphere": "air"}),
+        (["4-tert-butylphenylmagnesium bromide"], {"atmosphere": "nitrogen"}),
+    ),
     "grignard_water": (
         (["methylmagnesium bromide", "water"], {}),
         (["magnesium", "water"], {}),
