@@ -83,7 +83,7 @@ def cage_formula(cage: str) -> str:
     """Return the formula of a cage by its name, without its symmetry.
 
     ``C60-Ih`` gives ``C60``, ``Sc3N@Ih-C80`` gives ``Sc3N@C80``. Raises StructureError for what is
-    no cage, that is, for fewer than 20 carbons.
+    no cage, that is, for fewer than 20 carbons, or for an odd number of them.
     """
     match = _CAGE.fullmatch(_typed(cage))
     if match is None:
@@ -96,6 +96,11 @@ def cage_formula(cage: str) -> str:
         raise StructureError(
             f"“{cage}” is no fullerene: it has {carbons} carbons and the smallest has "
             f"{_FEWEST_CARBONS}; write C60, C70 or such."
+        )
+    if carbons % 2 and name == f"C{carbons}":
+        raise StructureError(
+            f"“{cage}” is no fullerene: every atom of a closed cage has three neighbours, so their "
+            "number is even; write C60, C70 or such."
         )
     return f"{match['held']}@{name}" if match["held"] else name
 

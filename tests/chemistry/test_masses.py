@@ -108,6 +108,7 @@ def test_cages_weigh_what_their_atoms_weigh(cage, expected):
         ("buckyball", "is no cage known here"),
         ("", "is no cage known here"),
         ("C10", "the smallest has 20"),
+        ("C61", "their number is even"),
         ("C60(OH)24", "is no cage known here"),
         ("C60Xx", "“Xx” in “C60Xx” is not an element"),
         ("Xx@C60", "“Xx” in “Xx@C60” is not an element"),
