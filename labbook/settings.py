@@ -102,6 +102,14 @@ WHITENOISE_USE_FINDERS = True
 WHITENOISE_ALLOW_ALL_ORIGINS = False
 MEDIA_ROOT = DATA_DIR / "files"
 
+# Without it, what goes wrong on the server outside debugging is written nowhere.
+LOGGING = {
+    "version": 1,
+    "disable_existing_loggers": False,
+    "handlers": {"errors": {"class": "logging.StreamHandler", "level": "ERROR"}},
+    "loggers": {"django.request": {"handlers": ["errors"]}},
+}
+
 # An import of ten thousand rows is a few megabytes of text.
 DATA_UPLOAD_MAX_MEMORY_SIZE = 10 * 1024 * 1024
 FILE_UPLOAD_MAX_MEMORY_SIZE = 1024 * 1024
