@@ -242,7 +242,8 @@ def _supplies(used: list[tuple[AmountsResultLine, float | None]]) -> Iterator[Su
 def _line_warnings(
     line: AmountsLine, worked_out: AmountsResultLine, substance: LineSubstance
 ) -> Iterator[str]:
-    if worked_out.mmol is not None and not (substance.can_be_weighed or substance.is_solution):
+    has_no_mass = substance.molar_mass_g_per_mol is None and not substance.is_solution
+    if worked_out.mmol is not None and has_no_mass:
         yield (
             f"{line.name}: no structure and no molar mass are given, so there is no mass to weigh."
         )

@@ -40,13 +40,6 @@ class LineSubstance:
         """Tell whether the substance is used as a solution of known molarity."""
         return self.molarity_mol_per_l is not None
 
-    @property
-    def can_be_weighed(self) -> bool:
-        """Tell whether a mass follows from an amount."""
-        if self.is_solution:
-            return self.density_g_per_ml is not None
-        return self.molar_mass_g_per_mol is not None
-
 
 def mass_on_balance_mg(mmol: float, substance: LineSubstance) -> float | None:
     """Return the mass in mg that holds ``mmol`` of substance; of a solution, by its density."""

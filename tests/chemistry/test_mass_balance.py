@@ -84,6 +84,20 @@ def test_without_a_target_there_is_no_yield(target_level):
     assert found.level_mmol[1] > 0
 
 
+def test_without_recovered_cage_all_of_it_was_consumed():
+    found = balance(IsolatedFraction(131.822, 1))
+
+    assert found.recovered_mmol == 0
+    assert found.yield_on_consumed == found.yield_on_charged > 0
+
+
+def test_all_cage_recovered_leaves_no_yield_on_consumed():
+    found = balance(IsolatedFraction(0.5 * C60, 0), IsolatedFraction(0, 1))
+
+    assert found.recovered_mmol == found.charged_mmol
+    assert (found.yield_on_charged, found.yield_on_consumed) == (0, None)
+
+
 def test_more_recovered_than_charged_leaves_no_yield_on_consumed():
     found = balance(IsolatedFraction(400, 0), IsolatedFraction(1, 1))
 

@@ -46,6 +46,9 @@ PAIRS = [
         (0.05, "50 µg"),
         (0.5, "0.5 mg"),
         (124.7596, "124.8 mg"),
+        (0.1, "0.1 mg"),
+        (999.0, "999 mg"),
+        (1000.0, "1 g"),
         (1250.0, "1.25 g"),
         (2_000_000.0, "2 kg"),
         (1e-9, "0.000001 µg"),
@@ -57,7 +60,15 @@ def test_masses_are_shown_in_the_unit_of_the_balance(mass, shown):
 
 @pytest.mark.parametrize(
     ("volume", "shown"),
-    [(0.0, "0 mL"), (0.0176, "17.6 µL"), (220.98214, "221 mL"), (1500.0, "1.5 L")],
+    [
+        (0.0, "0 mL"),
+        (0.0176, "17.6 µL"),
+        (0.09, "90 µL"),
+        (0.1, "0.1 mL"),
+        (220.98214, "221 mL"),
+        (1000.0, "1 L"),
+        (1500.0, "1.5 L"),
+    ],
 )
 def test_volumes_are_shown_in_the_unit_of_the_glass(volume, shown):
     assert format_volume(volume) == shown
@@ -87,7 +98,28 @@ def test_times_are_shown_as_people_say_them(minutes, shown):
     assert format_duration(minutes) == shown
 
 
+@pytest.mark.parametrize(
+    ("amount", "shown"),
+    [
+        (0.0, "0 mmol"),
+        (0.09, "90 µmol"),
+        (0.1, "0.1 mmol"),
+        (999.0, "999 mmol"),
+        (1000.0, "1 mol"),
+    ],
+)
+def test_amounts_of_substance_are_shown_in_their_unit(amount, shown):
+    assert format_amount(amount) == shown
+
+
+def test_a_time_of_minutes_keeps_its_seconds_and_one_below_a_minute_its_figures():
+    assert format_duration(1.0) == "1 min"
+    assert format_duration(2 + 1.2345 / 60) == "2 min 1.2345 s"
+    assert format_duration(1.23456 / 60) == "1.235 s"
+
+
 def test_signs_and_shares():
+    assert format_temperature(0.0) == "0 °C"
     assert format_temperature(-78.0) == "−78 °C"
     assert format_fraction(0.973) == "97.3 %"
     assert format_amount(0.0138) == "13.8 µmol"

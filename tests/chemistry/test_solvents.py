@@ -164,6 +164,17 @@ def test_a_volume_beyond_the_margin_passes():
     assert advise_volume("C60", 500, "toluene", 224, 1.25).warnings == ()
 
 
+def test_exactly_what_is_advised_passes_and_exactly_what_dissolves_is_just_enough():
+    # Toluene dissolves 2.8 mg/mL; 280 mg take 100 mL, with a margin of 1.25 they take 125.
+    assert advise_volume("C60", 280, "toluene", 125, 1.25).warnings == ()
+    (warning,) = advise_volume("C60", 280, "toluene", 100, 1.25).warnings
+    assert "just dissolves" in warning
+
+
+def test_a_little_soluble_is_not_practically_insoluble():
+    assert advise_volume("C60", 100, "pyridine", 200, 1.25).warnings == ()  # 0.89 mg/mL
+
+
 def test_an_unknown_solubility_is_said():
     advice = advise_volume("C84", 10, "toluene", None, 1.25)
 
