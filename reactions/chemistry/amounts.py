@@ -228,8 +228,8 @@ def _actual_limiting(
     if actual_cage_mmol is None and all(line.actual_mmol is None for line in lines):
         return None
     used = [(line, _first(line.actual_mmol, line.mmol)) for line in lines]
-    first = _first(actual_cage_mmol, cage_mmol) or 0.0
-    return limiting_supply([Supply(cage, first), *_supplies(used)])
+    charged = cage_mmol if actual_cage_mmol is None else actual_cage_mmol
+    return limiting_supply([Supply(cage, charged), *_supplies(used)])
 
 
 def _supplies(used: list[tuple[AmountsResultLine, float | None]]) -> Iterator[Supply]:

@@ -10,6 +10,8 @@ from reactions.chemistry.solvents import least_volume_ml, published_solubilities
 # "Practically insoluble": more than 10 L per g; European Pharmacopoeia, General Notices 1.4
 # (from memory).
 PRACTICALLY_INSOLUBLE_MG_PER_ML = 0.1
+# A volume advised is shown to four figures and may be typed back so.
+_AS_SHOWN = 1 - 1e-3
 
 
 @dataclass(frozen=True)
@@ -45,9 +47,9 @@ def advise_volume(
     volume = least if chosen_ml is None else chosen_ml
     if least is None or lowest < PRACTICALLY_INSOLUBLE_MG_PER_ML:
         return VolumeAdvice(volume, least, (_insoluble(cage, solvent, lowest, least),))
-    if chosen_ml is None or chosen_ml >= least:
+    if chosen_ml is None or chosen_ml >= least * _AS_SHOWN:
         return VolumeAdvice(volume, least, ())
-    if chosen_ml < cage_mass_mg / lowest:
+    if chosen_ml < cage_mass_mg / lowest * _AS_SHOWN:
         warning = (
             f"{format_volume(chosen_ml)} of {solvent} dissolves {format_mass(chosen_ml * lowest)} "
             f"of {cage} at 25 °C ({lowest:g} mg/mL), not {format_mass(cage_mass_mg)}; take at "

@@ -136,6 +136,11 @@ def test_crystal_water_forgotten_in_the_structure_is_noticed():
     assert "crystal water" in warning
 
 
+@pytest.mark.parametrize(("typed", "warnings"), [(239.06, 0), (239.2, 0), (238.5, 1), (241, 1)])
+def test_a_typed_molar_mass_may_be_rounded_but_not_wrong(typed, warnings):
+    assert len(worked_out(malonate(molar_mass_g_per_mol=typed)).warnings) == warnings
+
+
 def test_the_purity_of_a_solution_is_left_out_and_it_is_said():
     pure, impure = (
         worked_out(malonate(molarity_mol_per_l=0.5, purity=purity)) for purity in (1, 0.9)
@@ -207,6 +212,12 @@ def test_actual_equivalents_count_by_the_plan_as_long_as_the_reference_is_not_we
     result = worked_out(malonate(actual_mmol=0.68687))
 
     assert result.lines[0].actual_equivalents == pytest.approx(1.0, abs=1e-4)
+
+
+def test_what_limits_by_what_went_in_is_told_from_the_first_amount_on():
+    assert worked_out(malonate(actual_mmol=0.5)).actual_limiting == "diethyl bromomalonate"
+    assert worked_out(malonate(), actual_cage_mass_mg=480).actual_limiting == "C60"
+    assert worked_out(malonate(), actual_cage_mass_mg=560).actual_limiting != "C60"
 
 
 def test_what_limits_is_told_again_by_what_went_in():

@@ -7,6 +7,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from reactions.chemistry.masses import cage_formula, molar_mass_g_per_mol
+from reactions.chemistry.quantities import volume_ml
+from reactions.chemistry.quantity_text import format_volume
 from reactions.chemistry.solvent_volume import advise_volume
 from reactions.chemistry.solvents import (
     UnknownSolventError,
@@ -169,6 +171,13 @@ def test_exactly_what_is_advised_passes_and_exactly_what_dissolves_is_just_enoug
     assert advise_volume("C60", 280, "toluene", 125, 1.25).warnings == ()
     (warning,) = advise_volume("C60", 280, "toluene", 100, 1.25).warnings
     assert "just dissolves" in warning
+
+
+@given(st.floats(0.5, 1e5), st.floats(1, 5))
+def test_the_volume_advised_may_be_typed_as_shown(mass_mg, margin):
+    shown = format_volume(advise_volume("C60", mass_mg, "toluene", None, margin).volume_ml)
+
+    assert advise_volume("C60", mass_mg, "toluene", volume_ml(shown), margin).warnings == ()
 
 
 def test_a_little_soluble_is_not_practically_insoluble():

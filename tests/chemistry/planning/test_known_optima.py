@@ -52,6 +52,17 @@ def test_a_band_of_poisson_levels():
     assert found.uptake == pytest.approx(math.sqrt(6), rel=1e-14)
 
 
+def test_a_band_of_equal_sites():
+    # Three sites: x_1 + x_2 = 3 p (1−p), most at p = 1/2; four: x_1 + x_2 + x_3 = 1 − p⁴ − (1−p)⁴,
+    # also at 1/2, and x_1 + x_2 = 4 p q³ + 6 p² q² where p/q = √(1/3 · 2/2): derived.
+    band = {"kind": "band", "lowest": 1, "highest": 2}
+    three, four = planned(band, sites=3), planned(band, sites=4)
+
+    assert three.uptake == pytest.approx(1.5, rel=1e-14)
+    assert planned({**band, "highest": 3}, sites=4).uptake == pytest.approx(2, rel=1e-14)
+    assert four.uptake == pytest.approx(4 / (1 + math.sqrt(3)), rel=1e-14)
+
+
 def test_most_mono_of_two_sites_with_attenuation():
     # r = 1, f/2, 0: x_1 = (e^(−f τ/2) − e^(−τ)) / (1 − f/2), most at τ = ln(f/2) / (f/2 − 1):
     # consecutive first-order reactions, textbook kinetics.

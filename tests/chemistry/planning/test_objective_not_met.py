@@ -33,7 +33,7 @@ def test_a_level_above_what_attenuation_allows():
         "0 %, whatever the reagent."
     )
     assert found.objective_value == 0.0
-    assert found.equivalents == 0.0
+    assert found.equivalents == found.exposure == 0.0
 
 
 def test_a_band_above_what_attenuation_allows():
